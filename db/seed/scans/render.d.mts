@@ -1,0 +1,46 @@
+/** Types of render.mjs, which stays plain JavaScript so that worker threads can load it without a compiler. */
+
+export type FilmFormat = "6x6" | "6x7" | "6x9";
+
+export type SceneName =
+  | "beech"
+  | "bridge"
+  | "drove"
+  | "fern"
+  | "flood"
+  | "furrows"
+  | "lock"
+  | "mill"
+  | "orchard"
+  | "poplars"
+  | "reeds"
+  | "ridges"
+  | "snow"
+  | "stage"
+  | "stars"
+  | "thorn";
+
+export type RenderJob = {
+  scene: SceneName;
+  /** frames of one scene differ by seed in framing, mist and exposure */
+  seed: number;
+  /** pixels */
+  width: number;
+  height: number;
+  format: FilmFormat;
+};
+
+export type RenderedScan = {
+  /** one grey channel, 16 bit, encoded with a gamma of 2.2, row after row */
+  data: Uint16Array;
+  width: number;
+  height: number;
+  /** pixels per inch of film */
+  dpi: number;
+};
+
+/** Draws one frame of film. The same job gives the same samples on the same version of Node. */
+export function render(job: RenderJob): RenderedScan;
+
+/** Baseline TIFF, uncompressed, with the Gray Gamma 2.2 profile. */
+export function encodeTiff(scan: RenderedScan): Uint8Array<ArrayBuffer>;

@@ -1,0 +1,799 @@
+// Canal and mill: built things, standing in water.
+import { clamp, mix, rng, smooth, tile } from "../noise.mjs";
+import { drawTree, grassEdge, growTree, limbLight, treeLine } from "../trees.mjs";
+import { mist, sky, streaks } from "./common.mjs";
+
+/** Courses of brick or block: tone multiplier at (u, v), with mortar and weather. */
+function masonry(seed, { course, unit, joint = 0.12, vary = 0.28, mortar = 1.5 }) {
+  const f = tile("fine"),
+    c = tile("cloud"),
+    tone = new Float32Array(4096),
+    r = rng(seed);
+  for (let i = 0; i < 4096; i++) tone[i] = Math.exp(r.gauss() * vary);
+  return (u, v, px = 0) => {
+    const row = Math.floor(v / course),
+      fv = v / course - row,
+      su = u / unit + (row & 1 ? 0.5 : 0) + ((row * 37) % 11) * 0.013,
+      col = Math.floor(su),
+      fu = su - col;
+    const keep = clamp(course / (px + 1e-9) / 3 - 0.4),
+      jw = (joint * course) / unit;
+    const inJoint = fv < joint || fu < jw ? 1 : 0;
+    const t = tone[(Math.imul(row, 131) + Math.imul(col, 17)) & 4095];
+    return (
+      mix(1, inJoint ? mortar : t, keep) *
+      (1 + 0.14 * f.at(u * 2.1, v * 2.1) + 0.1 * f.at(u * 8.3, v * 8.3)) *
+      Math.exp(0.3 * c.at(u * 0.35, v * 0.5))
+    );
+  };
+}
+
+export const bridge = {
+  title: "Amberley Locks, Bridge 11",
+  aspect: 1,
+  look: { format: "6x6", film: "iso125", ev: 0.1, contrast: 1.05, vignette: 0.26, glow: 0.1 },
+  paint(p, r) {
+    const A = p.A,
+      yw = r.range(0.53, 0.56),
+      cx = A * r.range(0.48, 0.52),
+      R = r.range(0.3, 0.325),
+      n = tile("soft"),
+      c = tile("cloud"),
+      px = 1 / p.h;
+    sky(p, r, { top: 0.5, low: 1.15, at: yw, gx: cx / A, gy: yw - 0.1, glow: 0.3, size: 0.25, cloud: 0.05 });
+    // beyond the arch: the cut runs on into mist
+    treeLine(p, r, () => yw - 0.01, { size: 0.13, tone: 0.62, fill: 0.55, gap: 0.3, full: true });
+    mist(p, r, { tone: 1.05, amount: (_x, y) => 0.55 * smooth(yw - 0.2, yw, y), y0: yw - 0.3, y1: yw });
+    for (const s of [-1, 1]) {
+      const q = rng(r.int(0, 1e6));
+      treeLine(p, q, () => yw - 0.008, {
+        from: s < 0 ? cx - 0.34 : cx + 0.12,
+        to: s < 0 ? cx - 0.1 : cx + 0.36,
+        size: 0.17,
+        tone: 0.3,
+        fill: 0.45,
+        gap: 0.28,
+        full: true,
+      });
+    }
+    mist(p, r, {
+      tone: 1.1,
+      amount: (_x, y) => 0.75 * Math.exp(-(((y - yw) / 0.035) ** 2)),
+      y0: yw - 0.12,
+      y1: yw + 0.01,
+    });
+    p.poly(
+      [
+        [
+          [cx + 0.11, yw + 0.001],
+          [cx + 0.5, yw - 0.03],
+          [cx + 0.5, yw + 0.01],
+        ],
+      ],
+      0.12,
+    );
+    grassEdge(p, r, (x) => yw - 0.03 * smooth(cx + 0.11, cx + 0.5, x), {
+      from: cx + 0.12,
+      to: cx + 0.42,
+      n: 800,
+      len: 0.012,
+      tone: [0.05, 0.16],
+    });
+    // trees standing behind the parapet
+    const road = (x) =>
+      yw - R - 0.078 - 0.03 * Math.exp(-(((x - cx) / 0.32) ** 2)) + 0.05 * smooth(0.3, 0.9, Math.abs(x - cx));
+    for (let i = 0; i < 4; i++) {
+      const x = A * [0.03, 0.2, 0.86, 1.0][i] + r.gauss() * 0.02;
+      drawTree(
+        p,
+        growTree({
+          seed: 120 + (i % 2),
+          crown: i % 2 ? "tall" : "broad",
+          points: 800,
+          trunk: 0.2,
+          kill: 0.04,
+          tip: 0.001,
+          twigs: 3,
+        }),
+        x,
+        0.32,
+        r.range(0.34, 0.42),
+        { tone: mix(0.3, 0.12, i % 2), flip: i > 1 },
+      );
+    }
+    // masonry with the arch cut out of it
+    const N = 120,
+      outer = [];
+    for (let i = 0; i <= 40; i++) {
+      const x = mix(-0.05, A + 0.05, i / 40);
+      outer.push([x, road(x)]);
+    }
+    outer.push([A + 0.05, yw + 0.01], [cx + R, yw + 0.01]);
+    for (let i = 0; i <= N; i++) {
+      const a = (Math.PI * i) / N;
+      outer.push([cx + Math.cos(a) * R, yw - Math.sin(a) * R]);
+    }
+    outer.push([cx - R, yw + 0.01], [-0.05, yw + 0.01]);
+    const brick = masonry(r.int(1, 999), { course: 0.0125, unit: 0.038 });
+    const ring = masonry(r.int(1, 999), { course: 0.017, unit: 0.0145, vary: 0.3, joint: 0.09 });
+    // underside of the vault first: the far face is smaller and set to one side
+    const fx = cx + r.pick([-1, 1]) * 0.012,
+      fr = R * 0.8;
+    const vault = [];
+    for (let i = 0; i <= N; i++) {
+      const a = (Math.PI * i) / N;
+      vault.push([cx + Math.cos(a) * (R + 0.014), yw + 0.006 - Math.sin(a) * (R + 0.014)]);
+    }
+    for (let i = N; i >= 0; i--) {
+      const a = (Math.PI * i) / N;
+      vault.push([fx + Math.cos(a) * fr, yw + 0.006 - Math.sin(a) * fr]);
+    }
+    p.poly([vault], (x, y) => {
+      const dx = x - cx,
+        dy = yw - y,
+        a = Math.atan2(dy, dx),
+        q = Math.hypot(dx, dy),
+        t = clamp((R - q) / (R - fr)),
+        z = t / (1.02 - t * 0.75);
+      const caustic = 1 + 0.5 * smooth(0.3, 1.6, c.at(a * 0.9 + 0.3, z * 0.2)) * Math.abs(Math.cos(a));
+      return (
+        (0.016 + 0.075 * Math.abs(Math.cos(a)) ** 1.4 * (0.4 + t)) *
+          brick(a * R * 1.0, z * 0.18, px * 1.2) *
+          caustic +
+        0.02 * t * t
+      );
+    });
+    const damp = (x, y) => mix(1, 0.35, smooth(0.09, 0, yw - y + 0.02 * c.at(x * 0.7, 0.2)));
+    p.poly([outer], (x, y) => {
+      const d = Math.hypot(x - cx, y - yw),
+        stain = Math.exp(0.42 * n.at(x * 0.35 + 0.2, y * 0.2) + 0.22 * c.at(x * 1.4, y * 0.18));
+      const out = smooth(R + 0.034 - px, R + 0.034 + px, d),
+        a = Math.atan2(yw - y, x - cx),
+        stone = out < 1 ? 0.135 * ring(a * R, d - R + 0.017 * 3, px) * damp(x, y) * stain : 0;
+      if (out === 0) return stone;
+      const under = 1 - 0.35 * smooth(0.05, 0.034, d - R);
+      return mix(
+        stone,
+        0.088 *
+          brick(x, y - road(x) * 0.25, px) *
+          damp(x, y) *
+          stain *
+          under *
+          mix(1.25, 0.75, smooth(0.2, yw, y)),
+        out,
+      );
+    });
+    // string course, parapet coping
+    for (const [dy, th, t] of [
+      [0, 0.009, 0.3],
+      [0.012, 0.004, 0.02],
+      [0.058, 0.005, 0.2],
+      [0.066, 0.003, 0.022],
+    ]) {
+      const pts = [];
+      for (let i = 0; i <= 60; i++) {
+        const x = (A * i) / 60;
+        pts.push([x, road(x) + dy]);
+      }
+      p.line(pts, th, th, t, t < 0.1 ? 0.7 : 0.85);
+    }
+    for (let i = 0; i < 46; i++) {
+      const x = (A * (i + r.gauss() * 0.1)) / 45;
+      p.stroke(x, road(x) - 0.008, x, road(x) + 0.007, 0.0007, 0.0007, 0.05, 0.05, 0.6);
+    }
+    // growth hanging from the brickwork and along the banks
+    for (const side of [-1, 1])
+      for (let k = 0; k < 5; k++) {
+        const x0 = cx + side * r.range(R + 0.12, A * 0.52),
+          y0 = road(x0) + 0.01,
+          L = r.range(0.05, 0.2);
+        for (let i = 0; i < 1900; i++) {
+          const v = r.next() ** 1.4,
+            x = x0 + r.gauss() * 0.03 * (1.1 - v),
+            y = y0 + v * L + r.gauss() * 0.012,
+            s = r.range(0.0009, 0.0024);
+          p.dab(x, y, s * r.range(0.6, 1), s, r.pick([0.008, 0.012, 0.018, 0.03, 0.075]), 0.9, 0.25);
+        }
+      }
+    for (const s of [-1, 1])
+      grassEdge(p, r, () => yw + 0.004, {
+        from: s < 0 ? -0.02 : cx + R + 0.01,
+        to: s < 0 ? cx - R - 0.01 : A + 0.02,
+        n: 2600,
+        len: 0.05,
+        tone: [0.008, 0.06],
+        lean: 0,
+        width: 0.0007,
+      });
+    p.reflect(yw, {
+      ripple: 0.0022,
+      spread: 0.022,
+      dim: 0.88,
+      deep: 0.62,
+      body: 0.006,
+      seed: r.int(0, 90),
+      scale: 0.8,
+    });
+    mist(p, r, {
+      tone: 0.9,
+      amount: (x, y) => 0.3 * Math.exp(-(((y - yw) / 0.012) ** 2)) * smooth(R, R * 0.6, Math.abs(x - cx)),
+      y0: yw - 0.04,
+      y1: yw + 0.04,
+      rough: 0.6,
+    });
+  },
+};
+
+export const lock = {
+  title: "Amberley Locks, Lower Gates",
+  aspect: 1.25,
+  look: { format: "6x7", film: "iso125", ev: 0.15, contrast: 1.05, vignette: 0.26, glow: 0.1 },
+  paint(p, r) {
+    const A = p.A,
+      yw = r.range(0.7, 0.73),
+      cx = A * r.range(0.48, 0.53),
+      n = tile("soft"),
+      c = tile("cloud"),
+      f = tile("fine"),
+      px = 1 / p.h,
+      o = r.next();
+    sky(p, r, { top: 0.55, low: 1.05, at: 0.5, gx: 0.5, gy: 0.4, glow: 0.18, size: 0.4, cloud: 0.06 });
+    treeLine(p, r, () => 0.43, { size: 0.16, tone: 0.66, fill: 0.5, gap: 0.26 });
+    mist(p, r, { tone: 0.98, amount: (_x, y) => 0.5 * smooth(0.22, 0.42, y), y1: 0.46 });
+    for (const [x, s, t, k] of [
+      [0.12, 0.42, 0.3, "broad"],
+      [0.93, 0.36, 0.38, "tall"],
+    ])
+      drawTree(
+        p,
+        growTree({ seed: 130, crown: k, points: 900, trunk: 0.22, kill: 0.038, tip: 0.001, twigs: 3 }),
+        A * x + r.gauss() * 0.03,
+        0.46,
+        s * r.range(0.9, 1.1),
+        { tone: t, flip: r.chance(0.5) },
+      );
+    mist(p, r, { tone: 1.0, amount: (_x, y) => 0.72 * smooth(0.34, 0.45, y), y0: 0.3, y1: 0.5 });
+    treeLine(p, r, () => 0.452, { size: 0.05, vary: 0.4, tone: 0.24, fill: 0.8, gap: 0.2, full: true });
+    mist(p, r, { tone: 0.9, amount: (_x, y) => 0.35 * smooth(0.4, 0.45, y), y0: 0.38, y1: 0.48 });
+    const W = 0.27,
+      top = 0.455,
+      lx = cx - W,
+      rx = cx + W; // gate opening
+    const bank = (x) => top - 0.004 + 0.004 * n.at(x * 0.4, o);
+    p.hill(bank, (x, y) => 0.14 * Math.exp(0.3 * f.at(x * 1.2, y * 2)));
+    grassEdge(p, r, bank, { n: 3000, len: 0.014, tone: [0.06, 0.2], drop: 0.012 });
+    // wing walls, turning outwards below the gates
+    const brick = masonry(r.int(1, 999), { course: 0.0165, unit: 0.05 }),
+      block = masonry(r.int(1, 999), { course: 0.048, unit: 0.12, joint: 0.05, vary: 0.16 });
+    const stain = (x, y) =>
+      Math.exp(0.35 * c.at(x * 1.3, y * 0.12) + 0.3 * n.at(x * 0.3, y * 0.4)) *
+      mix(1, 0.25, smooth(yw - 0.1 + 0.012 * c.at(x * 0.6, 0.4), yw - 0.065, y));
+    for (const s of [-1, 1]) {
+      const X = (u) => cx + s * u;
+      p.poly(
+        [
+          [
+            [X(W + 0.05), top - 0.002],
+            [X(1.3), top + 0.012],
+            [X(1.3), yw + 0.02],
+            [X(W + 0.05), yw + 0.01],
+          ],
+        ],
+        (x, y) => 0.085 * brick(x, y, px) * stain(x, y) * mix(1.2, 0.8, clamp(Math.abs(x - cx) - W)),
+      );
+      p.poly(
+        [
+          [
+            [X(W - 0.002), top - 0.012],
+            [X(W + 0.058), top - 0.012],
+            [X(W + 0.058), yw + 0.01],
+            [X(W - 0.002), yw + 0.01],
+          ],
+        ],
+        (x, y) => 0.15 * block(x, y, px) * stain(x, y) * (s > 0 ? 1.15 : 0.8),
+      );
+      p.poly(
+        [
+          [
+            [X(W - 0.006), top - 0.022],
+            [X(1.3), top - 0.008],
+            [X(1.3), top + 0.016],
+            [X(W - 0.006), top + 0.002],
+          ],
+        ],
+        (x, y) =>
+          0.36 * (1 + 0.12 * f.at(x * 1.4, y * 1.4)) * (Math.abs(((x - cx) * 7.3) % 1) < 0.02 ? 0.3 : 1),
+      );
+      p.line(
+        [
+          [X(W - 0.006), top + 0.004],
+          [X(1.3), top + 0.019],
+        ],
+        0.0022,
+        0.0022,
+        0.02,
+        0.8,
+      );
+      p.line(
+        [
+          [X(W - 0.002), top],
+          [X(W - 0.002), yw],
+        ],
+        0.003,
+        0.003,
+        0.015,
+        0.8,
+      );
+    }
+    // chamber beyond is black; the two leaves lean together towards us
+    p.poly(
+      [
+        [
+          [lx, top - 0.01],
+          [rx, top - 0.01],
+          [rx, yw],
+          [lx, yw],
+        ],
+      ],
+      0.02,
+    );
+    const gt = top + 0.012;
+    for (const s of [-1, 1]) {
+      const X = (u) => cx + s * u,
+        drop = 0.012;
+      const leaf = [
+        [X(W - 0.004), gt],
+        [X(0.003), gt + drop],
+        [X(0.003), yw + 0.01],
+        [X(W - 0.004), yw + 0.01],
+      ];
+      p.poly([leaf], (x, y) => {
+        const u = Math.abs(x - cx),
+          b = u / 0.0245,
+          k = Math.floor(b),
+          fr = b - k,
+          wet = smooth(yw - 0.17, yw - 0.04, y + 0.02 * c.at(x * 0.9, o));
+        return (
+          0.052 *
+          (1 + 0.3 * Math.sin(k * 12.9 + s)) *
+          (fr < 0.09 ? 0.25 : 1) *
+          Math.exp(0.3 * f.at(x * 2.4, y * 0.3) + 0.25 * c.at(x * 1.2, y * 0.25)) *
+          mix(1, 0.4, wet) *
+          (s > 0 ? 1.2 : 0.85)
+        );
+      });
+      for (const [v, th] of [
+        [0.012, 0.013],
+        [0.095, 0.0095],
+        [0.17, 0.0095],
+      ]) {
+        const y0 = gt + v,
+          y1 = y0 + drop;
+        p.line(
+          [
+            [X(W - 0.006), y0],
+            [X(0.004), y1],
+          ],
+          th,
+          th,
+          s > 0 ? 0.1 : 0.075,
+        );
+        p.line(
+          [
+            [X(W - 0.006), y0 + th * 1.05],
+            [X(0.004), y1 + th * 1.05],
+          ],
+          0.003,
+          0.003,
+          0.008,
+          0.9,
+        );
+        p.line(
+          [
+            [X(W - 0.006), y0 - th * 0.9],
+            [X(0.004), y1 - th * 0.9],
+          ],
+          0.0014,
+          0.0014,
+          0.3,
+          0.6,
+        );
+      }
+      for (const u of [W - 0.014, 0.012])
+        p.line(
+          [
+            [X(u), gt - (u > 0.1 ? 0.03 : 0.012)],
+            [X(u), yw + 0.01],
+          ],
+          0.0125,
+          0.0125,
+          s > 0 ? 0.1 : 0.07,
+          1,
+          limbLight(1, 0.35, 0.2),
+        );
+      // balance beam, white at the end
+      const by = gt - 0.042,
+        ex = 0.58 + r.gauss() * 0.01,
+        thick = 0.021;
+      const beam = [
+        [X(0.004), by + 0.014 - thick * 0.62],
+        [X(ex), by - 0.016 - thick],
+        [X(ex), by - 0.016 + thick],
+        [X(0.004), by + 0.014 + thick * 0.62],
+      ];
+      p.poly(
+        [beam.map(([x, y]) => [x, y + 0.05 + 0.02]).map(([x, y]) => [x, Math.max(y, top - 0.016)])],
+        0.05,
+        0.35,
+      );
+      p.poly([beam], (x, y) => {
+        const u = Math.abs(x - cx),
+          v = (y - (by + mix(0.014, -0.016, u / ex))) / thick;
+        const white = u > ex - 0.085;
+        return (
+          (white ? 0.85 : 0.042) *
+          (v < -0.62 ? (white ? 1.25 : 3.2) : v > 0.5 ? 0.5 : 1) *
+          Math.exp(0.22 * f.at(u * 0.35 + s, y * 2.2) + 0.16 * c.at(u, y)) *
+          (white ? clamp(1 - 0.35 * smooth(0.4, 1.6, c.at(x * 1.5, y * 2 + o))) : 1)
+        );
+      });
+      p.line(
+        [
+          [X(0.03), by - 0.05],
+          [X(0.03), by + 0.01],
+        ],
+        0.0028,
+        0.0028,
+        0.03,
+      );
+      p.line(
+        [
+          [X(0.2), by - 0.062],
+          [X(0.2), by + 0.0],
+        ],
+        0.0028,
+        0.0028,
+        0.03,
+      );
+      p.line(
+        [
+          [X(0.2), by - 0.062],
+          [X(0.03), by - 0.05],
+          [X(-0.03), by - 0.049],
+        ],
+        0.0022,
+        0.0022,
+        0.035,
+      );
+      // paddle gear
+      p.poly(
+        [
+          [
+            [X(0.105), by - 0.075],
+            [X(0.128), by - 0.075],
+            [X(0.13), by + 0.01],
+            [X(0.103), by + 0.01],
+          ],
+        ],
+        0.016,
+      );
+      p.dab(X(0.116), by - 0.05, 0.017, 0.017, 0.02, 1);
+      p.dab(X(0.116), by - 0.05, 0.007, 0.007, 0.2, 1);
+    }
+    // leaking water: a long exposure turns it to silk
+    for (let i = 0; i < 240; i++) {
+      const mid = r.chance(0.6),
+        x = mid
+          ? cx + r.gauss() * 0.0035
+          : cx + r.pick([-1, 1]) * r.pick([0.085, 0.16, W - 0.02]) + r.gauss() * 0.006,
+        y0 = mid ? gt + r.range(0.03, 0.1) : gt + r.range(0.09, 0.19),
+        sp = mid ? (x - cx) * 0.8 + r.gauss() * 0.004 : r.gauss() * 0.0015;
+      p.line(
+        [
+          [x, y0],
+          [x + sp * 0.3, mix(y0, yw, 0.5)],
+          [x + sp, yw + 0.004],
+        ],
+        0.0005,
+        r.range(0.0008, 0.003),
+        r.range(0.5, 1.1),
+        mid ? 0.13 : 0.1,
+      );
+    }
+    for (let i = 0; i < 90; i++)
+      p.dab(
+        cx + r.gauss() * 0.04,
+        yw - 0.004 + r.gauss() * 0.003,
+        r.range(0.01, 0.04),
+        r.range(0.004, 0.012),
+        0.95,
+        0.12,
+        1,
+      );
+    p.reflect(yw, { ripple: 0.004, spread: 0.06, dim: 0.8, deep: 0.62, body: 0.008, seed: r.int(0, 90) });
+    p.wash(
+      (x, y) => {
+        const d = y - yw,
+          q = (x - cx) / (0.05 + d * 1.2);
+        return Math.exp(-q * q) * Math.exp(-d / 0.12) * (0.34 + 0.1 * c.at(x * 0.8, 0.12 / (d + 0.04)));
+      },
+      (a, b) => a + Math.max(0, b) * (1 - a * 0.5),
+      3,
+      yw,
+      1,
+    );
+    mist(p, r, {
+      tone: 0.85,
+      amount: (_x, y) => 0.35 * Math.exp(-(((y - yw - 0.01) / 0.02) ** 2)),
+      y0: yw - 0.07,
+      y1: yw + 0.1,
+      rough: 0.7,
+      scale: 1.6,
+    });
+  },
+};
+
+export const mill = {
+  title: "Saint Orrin’s Mill",
+  aspect: 1.25,
+  look: { format: "6x7", film: "iso125", ev: 0.08, contrast: 1.16, vignette: 0.26, glow: 0.08 },
+  paint(p, r) {
+    const A = p.A,
+      yw = r.range(0.57, 0.6),
+      n = tile("soft"),
+      c = tile("cloud"),
+      f = tile("fine"),
+      px = 1 / p.h,
+      o = r.next(),
+      flip = r.chance(0.4),
+      X = (x) => (flip ? A - x : x);
+    sky(p, r, {
+      top: 0.42,
+      low: 1.02,
+      at: yw,
+      gx: flip ? 0.2 : 0.8,
+      gy: yw - 0.05,
+      glow: 0.5,
+      size: 0.45,
+      cloud: 0.05,
+    });
+    streaks(p, r, { vx: flip ? -0.6 : 1.6, yh: yw + 0.1, strength: 0.26, freq: 0.5, along: 0.05, to: yw });
+    p.hill(
+      (x) => yw - 0.05 - 0.035 * n.at(x * 0.1 + o, 0.1),
+      (_x, _y, d) => mix(0.7, 0.95, clamp(d / 0.06)),
+    );
+    treeLine(p, r, () => yw - 0.005, { size: 0.075, tone: 0.5, fill: 0.5, gap: 0.36 });
+    mist(p, r, {
+      tone: 1.0,
+      amount: (_x, y) => 0.7 * Math.exp(-(((y - yw) / 0.05) ** 2)),
+      y0: yw - 0.15,
+      y1: yw,
+    });
+    const L = A * r.range(0.3, 0.36),
+      g = yw + 0.002,
+      fogTone = 0.72,
+      fogAt = (y) => 0.1 + 0.32 * smooth(yw - 0.12, yw, y);
+    const wall = (base, seed) => {
+      const b = masonry(seed, { course: 0.0058, unit: 0.017, vary: 0.2 });
+      return (x, y) => mix(base * b(x, y, px) * Math.exp(0.25 * c.at(x * 1.2, y * 0.3)), fogTone, fogAt(y));
+    };
+    const box = (x0, y0, x1, y1, t) =>
+      p.poly(
+        [
+          [
+            [X(x0), y0],
+            [X(x1), y0],
+            [X(x1), y1],
+            [X(x0), y1],
+          ],
+        ],
+        t,
+      );
+    // chimney, a little tapered with an oversailing cap
+    const chx = L + r.range(0.42, 0.46),
+      cht = yw - r.range(0.43, 0.47);
+    const stack = wall(0.05, 5);
+    p.poly(
+      [
+        [
+          [X(chx - 0.0155), cht],
+          [X(chx + 0.0155), cht],
+          [X(chx + 0.024), g],
+          [X(chx - 0.024), g],
+        ],
+      ],
+      (x, y) => {
+        const u = (X(x) - chx) / 0.022;
+        return mix(stack(x, y) * (1 + 0.9 * u), fogTone, fogAt(y) * 0.3);
+      },
+    );
+    box(chx - 0.021, cht - 0.004, chx + 0.021, cht + 0.006, 0.035);
+    box(chx - 0.019, cht + 0.012, chx + 0.019, cht + 0.017, 0.07);
+    // main range: gable end to the light, long side in shade
+    const x0 = L - 0.06,
+      x1 = L + 0.36,
+      ev = yw - 0.235,
+      rd = 0.062;
+    const face = wall(0.055, 7),
+      gable = wall(0.12, 9);
+    p.poly(
+      [
+        [
+          [X(x0), ev],
+          [X(x0 + 0.012), ev - rd],
+          [X(x1 - 0.045), ev - rd],
+          [X(x1), ev],
+        ],
+      ],
+      (x, y) =>
+        mix(
+          0.085 * (1 + 0.15 * f.at(x * 2, y * 4)) * (((((y - ev) * 160) % 1) + 1) % 1 < 0.2 ? 0.75 : 1),
+          fogTone,
+          0.12,
+        ),
+    );
+    box(x0, ev, x1, g, face);
+    p.poly(
+      [
+        [
+          [X(x1), ev],
+          [X(x1 + 0.045), ev - rd],
+          [X(x1 + 0.09), ev],
+          [X(x1 + 0.09), g],
+          [X(x1), g],
+        ],
+      ],
+      gable,
+    );
+    p.poly(
+      [
+        [
+          [X(x1 - 0.047), ev - rd - 0.002],
+          [X(x1 + 0.045), ev - rd - 0.002],
+          [X(x1 + 0.002), ev + 0.004],
+          [X(x1 - 0.004), ev + 0.002],
+        ],
+      ],
+      0.1,
+    );
+    p.line(
+      [
+        [X(x0), ev],
+        [X(x1), ev],
+      ],
+      0.0018,
+      0.0018,
+      0.012,
+      0.8,
+    );
+    for (let fl = 0; fl < 4; fl++)
+      for (let k = 0; k < 11; k++) {
+        const wx = x0 + 0.022 + k * 0.0362,
+          wy = ev + 0.02 + fl * 0.053;
+        if (wy > g - 0.03) continue;
+        box(wx, wy, wx + 0.015, wy + 0.027, mix(r.chance(0.1) ? 0.3 : 0.012, fogTone, fogAt(wy) * 0.8));
+        box(wx - 0.0015, wy + 0.027, wx + 0.0165, wy + 0.0298, mix(0.16, fogTone, fogAt(wy)));
+        for (const q of [0.005, 0.01])
+          p.stroke(X(wx + q), wy, X(wx + q), wy + 0.027, 0.0005, 0.0005, 0.12, 0.12, 0.7);
+        p.stroke(X(wx), wy + 0.013, X(wx + 0.015), wy + 0.013, 0.0005, 0.0005, 0.12, 0.12, 0.7);
+      }
+    for (let fl = 0; fl < 4; fl++)
+      for (let k = 0; k < 2; k++) {
+        const wx = x1 + 0.02 + k * 0.035,
+          wy = ev + 0.02 + fl * 0.053;
+        if (wy < g - 0.03) box(wx, wy, wx + 0.013, wy + 0.027, mix(0.02, fogTone, fogAt(wy)));
+      }
+    box(x1 + 0.036, ev - 0.035, x1 + 0.054, ev - 0.012, 0.02);
+    // hoist, lean-to, sheds with north lights
+    const sw = 0.052,
+      sx = x0 - 0.17,
+      sh = yw - 0.085;
+    for (let k = 0; k < 3; k++)
+      p.poly(
+        [
+          [
+            [X(sx + k * sw), sh],
+            [X(sx + k * sw + 0.008), sh - 0.036],
+            [X(sx + (k + 1) * sw), sh],
+            [X(sx + (k + 1) * sw + 0.015), g],
+            [X(sx + k * sw), g],
+          ],
+        ],
+        wall(0.075, 11 + k),
+      );
+    box(x1 + 0.09, yw - 0.1, x1 + 0.2, g, wall(0.07, 17));
+    p.poly(
+      [
+        [
+          [X(x1 + 0.09), yw - 0.128],
+          [X(x1 + 0.205), yw - 0.098],
+          [X(x1 + 0.205), yw - 0.094],
+          [X(x1 + 0.09), yw - 0.1],
+        ],
+      ],
+      0.16,
+    );
+    for (let k = 0; k < 3; k++)
+      box(x1 + 0.105 + k * 0.032, yw - 0.078, x1 + 0.12 + k * 0.032, yw - 0.05, 0.06);
+    // trees at the tail of the island
+    drawTree(
+      p,
+      growTree({
+        seed: 140 + r.int(0, 1),
+        crown: "broad",
+        points: 1000,
+        trunk: 0.2,
+        kill: 0.036,
+        tip: 0.001,
+        twigs: 3.2,
+      }),
+      X(sx - 0.07),
+      yw,
+      r.range(0.26, 0.3),
+      { tone: (h) => mix(0.3, 0.035, smooth(0, 0.4, h)) },
+    );
+    treeLine(p, r, () => yw, {
+      from: flip ? -0.1 : x1 + 0.24,
+      to: flip ? A - x1 - 0.2 : A + 0.1,
+      size: 0.1,
+      vary: 0.5,
+      tone: 0.22,
+      fill: 0.6,
+      gap: 0.3,
+    });
+    treeLine(p, r, () => yw, {
+      from: flip ? A - sx + 0.02 : -0.1,
+      to: flip ? A + 0.1 : sx - 0.02,
+      size: 0.05,
+      vary: 0.5,
+      tone: 0.16,
+      fill: 0.7,
+      gap: 0.3,
+      full: true,
+    });
+    mist(p, r, {
+      tone: 0.92,
+      amount: (_x, y) => 0.42 * Math.exp(-(((y - yw) / 0.032) ** 2)),
+      y0: yw - 0.1,
+      y1: yw + 0.01,
+      rough: 0.5,
+      scale: 1.3,
+    });
+    p.stroke(0, yw - 0.001, A, yw - 0.001, 0.0022, 0.0022, 0.08, 0.08, 0.75);
+    grassEdge(p, r, () => yw, { n: 1800, len: 0.009, tone: [0.05, 0.16], lean: 0 });
+    p.reflect(yw, { ripple: 0.0022, spread: 0.03, dim: 0.9, deep: 0.5, seed: r.int(0, 90) });
+    mist(p, r, {
+      tone: 0.9,
+      amount: (_x, y) => 0.3 * Math.exp(-(((y - yw - 0.006) / 0.013) ** 2)),
+      y0: yw - 0.04,
+      y1: yw + 0.06,
+      rough: 0.6,
+      scale: 2,
+    });
+    p.wash(
+      (x, y) =>
+        1 - 0.16 * smooth(0.9, 1.8, c.at(x * 0.06 + o, 0.16 / (y - yw + 0.05))) * smooth(0.02, 0.12, y - yw),
+      (a, b) => a * b,
+      3,
+      yw,
+      1,
+    );
+    const sx0 = X(A * r.range(0.86, 0.98));
+    for (let i = 0; i < 90; i++) {
+      const x = sx0 + r.gauss() * 0.07,
+        a = -1.57 + r.gauss() * 0.16,
+        l = r.range(0.1, 0.27),
+        y = 1.02;
+      p.line(
+        [
+          [x, y],
+          [x + Math.cos(a) * l * 0.6, y + Math.sin(a) * l * 0.6],
+          [x + Math.cos(a) * l + r.gauss() * 0.02, y + Math.sin(a) * l * 0.95],
+        ],
+        0.0013,
+        0.0004,
+        r.pick([0.006, 0.012, 0.03]),
+      );
+    }
+  },
+};
