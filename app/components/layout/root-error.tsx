@@ -1,0 +1,55 @@
+import { href, isRouteErrorResponse, Link, useLocation } from "react-router";
+import { segmentOf } from "~/languages/language";
+import { useLanguage, useMessages } from "~/languages/messages";
+import { type AppErrorCode, appErrorCode } from "~/platform/errors";
+
+function codeOf(error: unknown): AppErrorCode | "bug" {
+  if (!isRouteErrorResponse(error)) return "bug";
+  const code = appErrorCode(error.data);
+  if (code !== null) return code;
+  if (error.status === 404 || error.status === 405) return "not_found";
+  if (error.status === 403) return "not_allowed";
+  return error.status < 500 ? "bad_request" : "bug";
+}
+
+/** The page shown instead of one that cannot be: what happened, and the next step. */
+export function RootError({ error }: { error: unknown }) {
+  const words = useMessages().errors;
+  const lang = segmentOf(useLanguage());
+  const { pathname, search } = useLocation();
+  const [title, text] = {
+    not_found: [words.notFoundTitle, words.notFoundText],
+    not_allowed: [words.notAllowedTitle, words.notAllowedText],
+    sign_in_needed: [words.signInTitle, words.signInText],
+    too_many: [words.tooManyTitle, words.tooManyText],
+    bad_request: [words.badRequestTitle, words.badRequestText],
+    unavailable: [words.unavailableTitle, words.unavailableText],
+    gone: [words.goneTitle, words.goneText],
+    bug: [words.bugTitle, words.bugText],
+  }[codeOf(error)];
+  const signIn = codeOf(error) === "sign_in_needed";
+  return (
+    <main id="content" className="page">
+      <title>{title}</title>
+      <section className="window window-pad flow error-page">
+        <h1>{title}</h1>
+        <p className="lead">{text}</p>
+        <p>
+          {signIn ? (
+            <Link
+              className="press press-fill"
+              to={`${href("/:lang?/sign-in", { lang })}?next=${encodeURIComponent(pathname + search)}`}
+            >
+              {words.signIn}
+            </Link>
+          ) : (
+            <Link className="press" to={href("/:lang?/prints", { lang })}>
+              {words.toPrints}
+            </Link>
+          )}{" "}
+          <Link to={href("/:lang?", { lang })}>{words.home}</Link>
+        </p>
+      </section>
+    </main>
+  );
+}
