@@ -1,23 +1,35 @@
-import { and, eq, inArray, sql } from "drizzle-orm";
 import type { Tx } from "db/client.server";
-import { copies, editions, ledgerEntries, ledgerPrivate, sheets, type LedgerPrivateJson } from "db/schema/schema";
+import {
+  copies,
+  editions,
+  type LedgerPrivateJson,
+  ledgerEntries,
+  ledgerPrivate,
+  printPictures,
+  sheets,
+} from "db/schema/schema";
+import { and, desc, eq, inArray, lt, sql } from "drizzle-orm";
 import { now } from "~/platform/clock";
 import { newId, randomSecret, sha256 } from "~/platform/ids.server";
 import { canonicalJson, type LedgerJson } from "./canonical-json";
-import { numberMark, type Run } from "./numbering";
+import { isForSale, numberMark, type Run } from "./numbering";
 import {
   allowedCopyTransition,
   allowedSheetTransition,
+  type CopyContext,
   type CopyEntryKind,
-  type EditionEntryKind,
+  isLive,
   type LedgerEntryKind,
-  type Making,
-  type Placement,
+  type RefusalCode,
   type SheetEntryKind,
+  type SheetMaking,
 } from "./transitions";
 
 /** Who acted, as the public part of an entry says it: a role or the shop itself, never a name. */
-export type Actor = { as: "shop" | "photographer" | "assistant" | "stockist" | "collector"; accountId?: string };
+export type Actor = {
+  as: "shop" | "photographer" | "assistant" | "stockist" | "collector";
+  accountId?: string;
+};
 
 /** The shop acting by itself, on a payment or a release. */
 export const THE_SHOP: Actor = { as: "shop" };
@@ -117,6 +129,9 @@ export function runTotal(edition: typeof editions.$inferSelect, run: Run): numbe
   }[run];
 }
 
+/** Entries that are written once for an edition as a whole, not for each of its copies. */
+export type EditionEntryKind = "opened" | "limit_lowered" | "prices_changed" | "closed_early" | "corrected";
+
 /** Writes an entry about the edition as a whole. Returns the entry's id. */
 export function writeEditionEntry(
   tx: Tx,
@@ -129,8 +144,8 @@ export function writeEditionEntry(
 
 /** A transition the book does not allow. `code` is for machines, the message for people. */
 export class RefusedTransition extends Error {
-  readonly code: string;
-  constructor(code: string, sentence: string) {
+  readonly code: RefusalCode;
+  constructor(code: RefusalCode, sentence: string) {
     super(sentence);
     this.name = "RefusedTransition";
     this.code = code;
@@ -142,20 +157,31 @@ export type CopyMove = Entry<CopyEntryKind> & {
   formatId?: string;
   orderLineId?: string | null;
   ownerPartyId?: string | null;
+  /** What the transition table needs to know beyond the placement. */
+  context?: CopyContext;
 };
 
 /**
  * Moves a copy to where the entry's kind leads, and writes the entry: placement and ledger change together or
  * not at all. Throws RefusedTransition where the table does not allow it.
  */
-export async function moveCopy(tx: Tx, edition: LockedEdition, actor: Actor, move: CopyMove): Promise<number> {
+export async function moveCopy(
+  tx: Tx,
+  edition: LockedEdition,
+  actor: Actor,
+  move: CopyMove,
+): Promise<number> {
   const [copy] = await tx.db
     .select()
     .from(copies)
     .where(and(eq(copies.id, move.copyId), eq(copies.editionId, edition.id)))
     .for("update");
   if (copy === undefined) throw new Error(`no copy ${move.copyId} in edition ${edition.id}`);
-  const transition = allowedCopyTransition(move.kind, copy.placement);
+  const transition = allowedCopyTransition(move.kind, copy.placement, {
+    ...move.context,
+    forSale: isForSale(copy.run),
+    issued: edition.firstIssuedAt !== null,
+  });
   if ("refused" in transition) throw new RefusedTransition(transition.refused, transition.sentence);
   await tx.db
     .update(copies)
@@ -172,10 +198,18 @@ export async function moveCopy(tx: Tx, edition: LockedEdition, actor: Actor, mov
   });
 }
 
-export type SheetMove = Entry<SheetEntryKind> & { sheetId: string };
+export type SheetMove = Entry<Exclude<SheetEntryKind, "printed_again">> & { sheetId: string };
 
-/** Moves a sheet to the making its entry leads to, and writes the entry. Throws RefusedTransition. */
-export async function moveSheet(tx: Tx, edition: LockedEdition, actor: Actor, move: SheetMove): Promise<number> {
+/**
+ * Moves a sheet to the making its entry leads to, and writes the entry. Printing a sheet whose forerunner was
+ * spoiled or destroyed is written as "printed_again". Throws RefusedTransition.
+ */
+export async function moveSheet(
+  tx: Tx,
+  edition: LockedEdition,
+  actor: Actor,
+  move: SheetMove,
+): Promise<number> {
   const [row] = await tx.db
     .select({ sheet: sheets, copy: copies })
     .from(sheets)
@@ -183,53 +217,70 @@ export async function moveSheet(tx: Tx, edition: LockedEdition, actor: Actor, mo
     .where(and(eq(sheets.id, move.sheetId), eq(copies.editionId, edition.id)))
     .for("update", { of: sheets });
   if (row === undefined) throw new Error(`no sheet ${move.sheetId} in edition ${edition.id}`);
-  const transition = allowedSheetTransition(move.kind, row.sheet.making);
-  if ("refused" in transition) throw new RefusedTransition(transition.refused, transition.sentence);
-  await tx.db.update(sheets).set({ making: transition.to }).where(eq(sheets.id, row.sheet.id));
-  return write(tx, edition, actor, move, {
-    copyId: row.copy.id,
-    sheetId: row.sheet.id,
-    body: {
-      run: row.copy.run,
-      number: row.copy.number,
-      of: runTotal(edition, row.copy.run),
-      sheet: row.sheet.serial,
-    },
+  const { sheet, copy } = row;
+  const previous = await makingBefore(tx, sheet);
+  const kind = move.kind === "printed" && previous !== null ? "printed_again" : move.kind;
+  const reason = move.secret?.reason;
+  const transition = allowedSheetTransition(kind, sheet.making, {
+    previous,
+    ...(reason === undefined ? {} : { reason }),
   });
+  if ("refused" in transition) throw new RefusedTransition(transition.refused, transition.sentence);
+  await tx.db.update(sheets).set({ making: transition.to }).where(eq(sheets.id, sheet.id));
+  return write(
+    tx,
+    edition,
+    actor,
+    { ...move, kind },
+    {
+      copyId: copy.id,
+      sheetId: sheet.id,
+      body: { run: copy.run, number: copy.number, of: runTotal(edition, copy.run), sheet: sheet.serial },
+    },
+  );
+}
+
+/** What became of the sheet of the same copy and picture before this one; null when this is the first. */
+async function makingBefore(tx: Tx, sheet: typeof sheets.$inferSelect): Promise<SheetMaking | null> {
+  const [previous] = await tx.db
+    .select({ making: sheets.making })
+    .from(sheets)
+    .where(
+      and(
+        eq(sheets.copyId, sheet.copyId),
+        eq(sheets.printPictureId, sheet.printPictureId),
+        lt(sheets.serial, sheet.serial),
+      ),
+    )
+    .orderBy(desc(sheets.serial))
+    .limit(1);
+  return previous?.making ?? null;
 }
 
 /**
- * Makes the next sheet of a copy for one picture, to be printed. The database refuses a second live one.
- * The first is no ledger line (nothing has happened to paper yet); a further one is "printed_again".
+ * Sees to it that a copy has a live sheet for each picture of its print, to be printed: for a copy just sold, or
+ * one whose sheet was spoiled. No ledger line: nothing has happened to paper yet. Returns the new sheets' ids.
  */
-export async function addSheet(
-  tx: Tx,
-  edition: LockedEdition,
-  actor: Actor,
-  sheet: { copyId: string; printPictureId: string },
-): Promise<string> {
-  const [last] = await tx.db
-    .select({ serial: sql<number>`coalesce(max(${sheets.serial}), 0)` })
-    .from(sheets)
-    .where(and(eq(sheets.copyId, sheet.copyId), eq(sheets.printPictureId, sheet.printPictureId)));
-  const serial = 1 + Number(last?.serial ?? 0);
-  const id = newId();
-  await tx.db.insert(sheets).values({ id, ...sheet, serial, createdAt: now() });
-  if (serial > 1) {
-    const [copy] = await tx.db.select().from(copies).where(eq(copies.id, sheet.copyId));
-    if (copy === undefined) throw new Error(`no copy ${sheet.copyId}`);
-    await write(tx, edition, actor, { kind: "printed_again" }, {
-      copyId: copy.id,
-      sheetId: id,
-      body: { run: copy.run, number: copy.number, of: runTotal(edition, copy.run), sheet: serial },
-    });
+export async function oweSheets(tx: Tx, edition: LockedEdition, copyId: string): Promise<string[]> {
+  const pictures = await tx.db
+    .select({ id: printPictures.id })
+    .from(printPictures)
+    .where(eq(printPictures.printId, edition.printId))
+    .orderBy(printPictures.position);
+  const there = await tx.db.select().from(sheets).where(eq(sheets.copyId, copyId));
+  const made: string[] = [];
+  for (const picture of pictures) {
+    const own = there.filter((s) => s.printPictureId === picture.id);
+    if (own.some((s) => isLive(s.making))) continue;
+    const id = newId();
+    const serial = 1 + own.reduce((most, s) => Math.max(most, s.serial), 0);
+    await tx.db.insert(sheets).values({ id, copyId, printPictureId: picture.id, serial, createdAt: now() });
+    made.push(id);
   }
-  return id;
+  return made;
 }
 
 /** The mark of a copy of an edition: "7/25", "AP 2/3". */
 export function markOf(edition: typeof editions.$inferSelect, copy: { run: Run; number: number }): string {
   return numberMark({ run: copy.run, number: copy.number, total: runTotal(edition, copy.run) });
 }
-
-export type { Making, Placement };

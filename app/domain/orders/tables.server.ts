@@ -1,0 +1,32 @@
+import type { Database } from "db/client.server";
+import { deliveryRates, taxRates, vatRegistrations } from "db/schema/schema";
+import type { TaxTables } from "~/domain/pricing/tax";
+import type { DeliveryRate } from "~/domain/shipping/delivery";
+
+/** The dated tables behind `taxFor` and `quoteDelivery`, as they stand. */
+export async function loadPriceTables(db: Database): Promise<{ tax: TaxTables; delivery: DeliveryRate[] }> {
+  const [registrations, rates, delivery] = await Promise.all([
+    db.select().from(vatRegistrations),
+    db.select().from(taxRates),
+    db.select().from(deliveryRates),
+  ]);
+  return {
+    tax: {
+      registrations: registrations.map((r) => ({
+        country: r.country,
+        number: r.number,
+        from: r.validFrom,
+        to: r.validTo,
+      })),
+      rates: rates.map((r) => ({
+        country: r.country,
+        kind: r.kind,
+        basisPoints: r.basisPoints,
+        from: r.validFrom,
+        to: r.validTo,
+        source: r.source,
+      })),
+    },
+    delivery,
+  };
+}

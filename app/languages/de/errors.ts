@@ -1,0 +1,27 @@
+export const errors = {
+  notFoundTitle: "Unter dieser Adresse ist nichts",
+  notFoundText: "Vielleicht wurde es zurückgezogen, oder die Adresse ist nicht ganz richtig.",
+  notAllowedTitle: "Diese Seite steht Ihnen nicht offen",
+  notAllowedText: "Ihr Konto umfasst sie nicht. Wenn das ein Irrtum ist, fragen Sie bitte das Atelier.",
+  signInTitle: "Bitte melden Sie sich an",
+  signInText: "Diese Seite gehört zu einem Konto.",
+  tooManyTitle: "Das war zu oft in kurzer Zeit",
+  tooManyText:
+    "Bitte warten Sie ein wenig und versuchen Sie es dann noch einmal. Bei uns ist nichts verloren gegangen.",
+  badRequestTitle: "Diese Anfrage war nicht lesbar",
+  badRequestText: "Bitte gehen Sie zurück, laden Sie die Seite neu und versuchen Sie es noch einmal.",
+  unavailableTitle: "Ein Teil des Ladens antwortet gerade nicht",
+  unavailableText: "Es ist nichts verloren gegangen. Bitte versuchen Sie es in einer Minute noch einmal.",
+  goneTitle: "Dieser Link gilt nicht mehr",
+  goneText: "Er wurde benutzt, ersetzt oder ist abgelaufen.",
+  bugTitle: "Bei uns ist etwas schiefgegangen",
+  bugText:
+    "Es ist vermerkt. Bitte versuchen Sie es noch einmal; wenn es wieder geschieht, schreiben Sie dem Atelier und nennen Sie die Angabe unten.",
+  reference: "Angabe",
+  toPrints: "Zu den Abzügen",
+  home: "Zur ersten Seite",
+  signIn: "Anmelden",
+  answerMissing: "Bitte füllen Sie dieses Feld aus.",
+  answerWrong: "Bitte prüfen Sie diese Angabe.",
+  needLook: { one: "Eine Angabe braucht noch einen Blick", other: "{n} Angaben brauchen noch einen Blick" },
+};

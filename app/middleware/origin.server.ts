@@ -1,0 +1,36 @@
+import type { MiddlewareFunction } from "react-router";
+import { env } from "~/platform/env.server";
+
+const SAFE = new Set(["GET", "HEAD", "OPTIONS"]);
+
+/** Called by machines that send no Origin and prove themselves by a signature. */
+const SIGNED_CALLERS = ["/hooks/"];
+
+/**
+ * Whether a request that changes state comes from a page of ours. Browsers send Origin with every such request;
+ * one that names another host, or `null`, is refused, and so is a cross-site one without Origin. The host is
+ * compared, not the scheme: behind a TLS proxy we are asked over plain HTTP.
+ */
+export function comesFromOurPages(request: Request): boolean {
+  const origin = request.headers.get("origin");
+  const site = request.headers.get("sec-fetch-site");
+  if (origin === null) return site === null || site === "same-origin" || site === "none";
+  if (!URL.canParse(origin)) return false;
+  const host = new URL(origin).host;
+  const ours = new Set([new URL(env.BASE_URL).host, request.headers.get("host") ?? ""]);
+  if (env.TRUST_PROXY !== "")
+    ours.add((request.headers.get("x-forwarded-host") ?? "").split(",")[0]?.trim() ?? "");
+  return host !== "" && ours.has(host);
+}
+
+/** Refuses state-changing requests from foreign pages on every route, resource routes included. */
+export const originMiddleware: MiddlewareFunction<Response> = async ({ request }, next) => {
+  if (SAFE.has(request.method)) return next();
+  const { pathname } = new URL(request.url);
+  if (SIGNED_CALLERS.some((prefix) => pathname.startsWith(prefix)) || comesFromOurPages(request))
+    return next();
+  return new Response("This request came from another site and was refused.\n", {
+    status: 403,
+    headers: { "Content-Type": "text/plain; charset=utf-8" },
+  });
+};
