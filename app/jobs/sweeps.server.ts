@@ -1,0 +1,9 @@
+/** Something looked after again and again, so that nothing rests on a job that was never made or was lost. */
+export type Sweep = {
+  name: string;
+  everySeconds: number;
+  /** Runs in one worker at a time; must be safe to be cut off anywhere. */
+  run(): Promise<void>;
+};
+
+export const SWEEPS: readonly Sweep[] = [];
