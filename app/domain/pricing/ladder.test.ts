@@ -137,9 +137,9 @@ describe("a sound ladder", () => {
 describe("a returned number", () => {
   const steps = [step(1, 5, 30000), step(6, 10, 36000)];
   it("sells at its own price or at the next number's", () => {
-    expect(priceOfReturned(steps, 2, "own_price", 7)).toBe(30000);
-    expect(priceOfReturned(steps, 2, "next_price", 7)).toBe(36000);
-    expect(priceOfReturned(steps, 2, "next_price", null)).toBe(30000);
+    expect(priceOfReturned(steps, 2, "own", 7)).toBe(30000);
+    expect(priceOfReturned(steps, 2, "next", 7)).toBe(36000);
+    expect(priceOfReturned(steps, 2, "next", null)).toBe(30000);
   });
 });
 

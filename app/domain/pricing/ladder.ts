@@ -123,7 +123,7 @@ export function cutLadder(steps: readonly PriceStep[], limit: number): PriceStep
 }
 
 /** How a returned number is priced when it is sold again: at its own price, or at the price of the next number. */
-export type ReturnPolicy = "own_price" | "next_price";
+export type ReturnPolicy = "own" | "next";
 
 /**
  * The price at which a returned number sells again, by the edition's policy. `nextNumber` is the lowest number never
@@ -135,5 +135,5 @@ export function priceOfReturned(
   policy: ReturnPolicy,
   nextNumber: number | null,
 ): number | null {
-  return priceOf(steps, policy === "next_price" && nextNumber !== null ? nextNumber : number);
+  return priceOf(steps, policy === "next" && nextNumber !== null ? nextNumber : number);
 }
