@@ -20,16 +20,7 @@ export function FormErrorSummary({ errors, title }: FormErrorSummaryProps) {
   }, [errors]);
   if (errors.length === 0) return null;
   return (
-    <Notice
-      kind="attention"
-      title={title}
-      role="alert"
-      id={id}
-      ref={box}
-      tabIndex={-1}
-      // biome-ignore lint/a11y/noAutofocus: whoever sent the form has to learn first that it was not taken
-      autoFocus
-    >
+    <Notice kind="attention" title={title} role="alert" id={id} ref={box} tabIndex={-1} autoFocus>
       <ul>
         {errors.map((error) => (
           <li key={`${error.field} ${error.message}`}>

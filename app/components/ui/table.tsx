@@ -119,7 +119,7 @@ function BodyCell<Row>({ column, content }: { column: TableColumn<Row>; content:
       .filter(Boolean)
       .join(" "),
     "data-label": column.headHidden ? undefined : column.head,
-    children: content,
+    children: isBlank(content) ? null : <div className="cell">{content}</div>,
   };
   return column.names ? (
     // biome-ignore lint/a11y/noRedundantRoles: see Table
@@ -128,4 +128,9 @@ function BodyCell<Row>({ column, content }: { column: TableColumn<Row>; content:
     // biome-ignore lint/a11y/noRedundantRoles: see Table
     <td role="cell" {...shared} />
   );
+}
+
+/** Nothing to be seen: where the table folds, the whole line is left out. */
+function isBlank(content: ReactNode): boolean {
+  return content === null || content === undefined || content === false || content === "";
 }

@@ -1,0 +1,86 @@
+/** Where sheets hang on the drawn wall. All lengths are millimetres, heights are from the wall's foot. */
+
+export type WallSheet = {
+  sheet: { width: number; height: number };
+  picture: { width: number; height: number };
+};
+
+export type WallLayout = {
+  width: number;
+  height: number;
+  /** Height of the floor's strip. */
+  floor: number;
+  /** For each sheet, in the order given: its left edge and its lower edge. */
+  places: { x: number; bottom: number }[];
+  chair: { x: number; bottom: number; width: number; height: number };
+};
+
+/** The middle of a picture hangs at the height of a standing person's eyes; common practice in galleries. */
+const eyeLevel = 1500;
+const floor = 130;
+/** Room under a sheet for its two lines of words. */
+const words = 260;
+
+/**
+ * Lays sheets on a wall. `wide` hangs them in one row, their middles at eye level; `narrow`, for a
+ * telephone, in as many rows as it takes, above or beside the chair.
+ */
+export function layOutWall(sheets: readonly WallSheet[], view: "wide" | "narrow"): WallLayout {
+  return view === "wide" ? inOneRow(sheets) : inRows(sheets);
+}
+
+function inOneRow(sheets: readonly WallSheet[]): WallLayout {
+  const margin = 250;
+  const gap = 210;
+  const chair = { width: 560, height: 880, bottom: 60 };
+  const taken = sheets.reduce((sum, one) => sum + one.sheet.width + gap, 0) - gap;
+  const width = Math.max(3800, margin + Math.max(taken, 0) + gap + chair.width + 170);
+  const tallest = Math.max(0, ...sheets.map((one) => one.sheet.height));
+  let x = margin;
+  const places = sheets.map((one) => {
+    const place = { x, bottom: eyeLevel - one.sheet.height / 2 };
+    x += one.sheet.width + gap;
+    return place;
+  });
+  return {
+    width,
+    height: Math.max(2060, eyeLevel + tallest / 2 + 110),
+    floor,
+    places,
+    chair: { ...chair, x: width - 170 - chair.width },
+  };
+}
+
+function inRows(sheets: readonly WallSheet[]): WallLayout {
+  const margin = 130;
+  const gap = 130;
+  const width = Math.max(2200, ...sheets.map((one) => one.sheet.width + 2 * margin));
+  const chair = { width: 480, height: 754, bottom: 60, x: width - 50 - 480 };
+  const rows: number[][] = [];
+  let right = Number.POSITIVE_INFINITY;
+  sheets.forEach((one, at) => {
+    if (right + one.sheet.width > width - margin) {
+      rows.push([]);
+      right = margin;
+    }
+    rows.at(-1)?.push(at);
+    right += one.sheet.width + gap;
+  });
+  const lastWidth = right - gap;
+  const places: WallLayout["places"] = sheets.map(() => ({ x: 0, bottom: 0 }));
+  /* the last row may stand beside the chair when it is short enough */
+  let foot = lastWidth <= chair.x - 60 ? floor + words : chair.bottom + chair.height + words - 60;
+  for (const row of rows.toReversed()) {
+    let x = margin;
+    let tallest = 0;
+    for (const at of row) {
+      const one = sheets[at];
+      if (!one) continue;
+      places[at] = { x, bottom: foot };
+      x += one.sheet.width + gap;
+      tallest = Math.max(tallest, one.sheet.height);
+    }
+    foot += tallest + words;
+  }
+  return { width, height: Math.max(foot - words + 130, 1400), floor, places, chair };
+}
