@@ -2,6 +2,8 @@ import type { Config } from "@react-router/dev/config";
 
 export default {
   ssr: true,
+  // Each state of the source is built beside the others: a running shop keeps its files (scripts/lib/source.mjs).
+  buildDirectory: process.env.BUILD_DIRECTORY || "build",
   future: {
     v8_middleware: true,
     v8_splitRouteModules: true,

@@ -121,7 +121,9 @@ async function start(args) {
   if (local.postgres) await endLeftoverServer(clusterDirectory);
   await assertPortsFree([
     { name: "PORT", port: ports.PORT, host },
-    ...(local.storage ? [{ name: /** @type {const} */ ("STORAGE_PORT"), port: ports.STORAGE_PORT, host }] : []),
+    ...(local.storage
+      ? [{ name: /** @type {const} */ ("STORAGE_PORT"), port: ports.STORAGE_PORT, host }]
+      : []),
     ...(local.stripe ? [{ name: /** @type {const} */ ("STRIPE_PORT"), port: ports.STRIPE_PORT, host }] : []),
     ...(local.mail
       ? [
@@ -171,7 +173,12 @@ async function start(args) {
     const services = [];
     const visited = (/** @type {number} */ port) => `http://${reachable(host)}:${port}`;
     if (local.storage) {
-      services.push({ name: "storage", file: "storage-fake/main.ts", address: visited(ports.STORAGE_PORT), host });
+      services.push({
+        name: "storage",
+        file: "storage-fake/main.ts",
+        address: visited(ports.STORAGE_PORT),
+        host,
+      });
     }
     if (local.stripe) {
       services.push({
@@ -329,14 +336,16 @@ async function introduce({ here, environment, secrets, dataDirectory, local }) {
   say("");
   say(`Shop      ${base}`);
   say(`Studio    ${base}/studio`);
-  if (local.mail) say(`E-mail    http://127.0.0.1:${environment.MAIL_PORT}   (whatever the shop sends arrives here)`);
+  if (local.mail)
+    say(`E-mail    http://127.0.0.1:${environment.MAIL_PORT}   (whatever the shop sends arrives here)`);
   say(`Data      ${dataDirectory}`);
   say("");
   if (secrets.mode === "studio") {
     await introduceSetup({ here, base, secrets, dataDirectory });
   } else {
     const { DEMO_LOGINS } = await import("../db/seed/demo-logins.mjs");
-    const width = (/** @type {"role" | "email"} */ key) => Math.max(...DEMO_LOGINS.map((login) => login[key].length));
+    const width = (/** @type {"role" | "email"} */ key) =>
+      Math.max(...DEMO_LOGINS.map((login) => login[key].length));
     say("Demo accounts (role, e-mail, password):");
     for (const { role, email, password } of DEMO_LOGINS) {
       say(`  ${role.padEnd(width("role"))}  ${email.padEnd(width("email"))}  ${password}`);

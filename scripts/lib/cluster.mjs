@@ -258,6 +258,18 @@ export async function endLeftoverServer(baseDirectory) {
 }
 
 /**
+ * Removes a cluster that is not running, wherever it lies.
+ *
+ * @param {string} baseDirectory
+ */
+export function removeCluster(baseDirectory) {
+  const note = locationNote(baseDirectory);
+  if (existsSync(note)) rmSync(readFileSync(note, "utf8").trim(), { recursive: true, force: true });
+  rmSync(note, { force: true });
+  rmSync(baseDirectory, { recursive: true, force: true });
+}
+
+/**
  * @param {string} directory
  * @returns {number | undefined}
  */

@@ -22,10 +22,7 @@ const CLUSTER_CONFIGURATION = "/etc/postgresql-common/createcluster.conf";
 export async function ensureDebianPackages({ browser = false, say }) {
   const postgres = findPostgres() === undefined;
   const forBrowser = browser
-    ? [
-        ...(existsSync(CHROMIUM) ? [] : ["chromium"]),
-        ...(existsSync(FONTS) ? [] : ["fonts-liberation"]),
-      ]
+    ? [...(existsSync(CHROMIUM) ? [] : ["chromium"]), ...(existsSync(FONTS) ? [] : ["fonts-liberation"])]
     : [];
   const missing = [...(postgres ? ["postgresql"] : []), ...forBrowser];
   if (missing.length === 0) return;

@@ -60,7 +60,8 @@ export function localServices(environment) {
     const [first = "", ...others] = SERVICE_VARIABLES[service];
     if (!environment[first]) return true;
     const missing = others.filter((name) => !environment[name]);
-    if (missing.length > 0) throw new PlainError(`${first} is set, so ${missing.join(", ")} must be set too.`);
+    if (missing.length > 0)
+      throw new PlainError(`${first} is set, so ${missing.join(", ")} must be set too.`);
     return false;
   };
   return {

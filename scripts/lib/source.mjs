@@ -1,5 +1,14 @@
 import { createHash } from "node:crypto";
-import { existsSync, mkdirSync, readdirSync, readFileSync, rmSync, statSync, utimesSync, writeFileSync } from "node:fs";
+import {
+  existsSync,
+  mkdirSync,
+  readdirSync,
+  readFileSync,
+  rmSync,
+  statSync,
+  utimesSync,
+  writeFileSync,
+} from "node:fs";
 import path from "node:path";
 import { withLock } from "./locks.mjs";
 
@@ -111,10 +120,14 @@ export async function ensureBuild(projectDirectory, { say, run }) {
     say("building the shop");
     rmSync(directory, { recursive: true, force: true });
     mkdirSync(directory, { recursive: true });
-    await run("build", [process.execPath, path.join("node_modules", "@react-router", "dev", "bin.js"), "build"], {
-      NODE_ENV: "production",
-      BUILD_DIRECTORY: path.relative(projectDirectory, directory),
-    });
+    await run(
+      "build",
+      [process.execPath, path.join("node_modules", "@react-router", "dev", "bin.js"), "build"],
+      {
+        NODE_ENV: "production",
+        BUILD_DIRECTORY: path.relative(projectDirectory, directory),
+      },
+    );
     writeFileSync(complete, "");
     removeOldBuilds(builds);
     return directory;

@@ -119,7 +119,9 @@ const limitBody: RequestHandler = (request, response, next) => {
 };
 
 function hasBody(request: IncomingMessage): boolean {
-  return request.headers["content-length"] !== undefined || request.headers["transfer-encoding"] !== undefined;
+  return (
+    request.headers["content-length"] !== undefined || request.headers["transfer-encoding"] !== undefined
+  );
 }
 
 /** Whatever no route has turned into a page. The address is not logged: it may hold a secret link. */
@@ -127,7 +129,10 @@ function failed(logger: WebOptions["logger"]): ErrorRequestHandler {
   return (error: unknown, request, response, next) => {
     const status = statusOf(error);
     if (status >= 500) {
-      logger.error({ requestId: request.headers[REQUEST_ID], method: request.method, err: error }, "request failed");
+      logger.error(
+        { requestId: request.headers[REQUEST_ID], method: request.method, err: error },
+        "request failed",
+      );
     }
     if (response.headersSent) return next(error);
     response

@@ -1,0 +1,40 @@
+import { defineConfig } from "@playwright/test";
+
+const report = process.env.E2E_REPORT;
+
+/** `npm test` starts a whole instance and names it here; by hand, name a running one. */
+export default defineConfig({
+  testDir: "tests/e2e",
+  forbidOnly: true,
+  retries: 0,
+  // The tests share one shop, its demo data and two cores with it.
+  workers: 1,
+  timeout: 90_000,
+  expect: { timeout: 10_000 },
+  reporter: report ? [["list"], ["json", { outputFile: report }]] : [["list"]],
+  outputDir: process.env.E2E_OUTPUT || "test-results",
+  use: {
+    baseURL: process.env.E2E_BASE_URL || "http://127.0.0.1:3000",
+    browserName: "chromium",
+    locale: "en-GB",
+    timezoneId: "Europe/London",
+    screenshot: "only-on-failure",
+    trace: "retain-on-failure",
+    launchOptions: {
+      executablePath: "/usr/bin/chromium",
+      args: [
+        "--no-sandbox",
+        "--disable-gpu",
+        "--disable-quic",
+        "--no-first-run",
+        "--disable-background-networking",
+        "--disable-component-update",
+        "--disable-sync",
+      ],
+    },
+  },
+  projects: [
+    { name: "desk", use: { viewport: { width: 1440, height: 900 } } },
+    { name: "phone", use: { viewport: { width: 390, height: 844 }, hasTouch: true, isMobile: true } },
+  ],
+});
