@@ -15,6 +15,16 @@ export const EMAIL_PAYLOADS = {
   /** To the former address of an account whose e-mail was changed. */
   "email-changed": z.object({ accountId: z.uuid() }),
   invitation: z.object({ invitationId: z.uuid() }),
+  /** To the buyer: what was bought, with its numbers. */
+  "order-confirmation": z.object({ orderId: z.uuid() }),
+  /** To the studio. */
+  "new-order": z.object({ orderId: z.uuid() }),
+  refund: z.object({ orderId: z.uuid(), refundId: z.uuid() }),
+  dispatch: z.object({ orderId: z.uuid(), dispatchId: z.uuid() }),
+  /** To a buyer whose payment came for a number that had gone. */
+  "number-offer": z.object({ orderId: z.uuid(), offerId: z.uuid() }),
+  /** To a buyer for whom the studio has made an order: where to pay it. */
+  "pay-link": z.object({ orderId: z.uuid() }),
 };
 
 export type EmailKind = keyof typeof EMAIL_PAYLOADS;

@@ -12,7 +12,7 @@ export function messagesOf(language: Language): Messages {
 
 /** The language of the page's address; English outside the shop. */
 export function useLanguage(): Language {
-  return languageOfSegment(useParams()["lang"]) ?? "en";
+  return languageOfSegment(useParams().lang) ?? "en";
 }
 
 export function useMessages(): Messages {

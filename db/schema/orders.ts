@@ -56,7 +56,7 @@ export const orders = pgTable(
       .references(() => parties.id),
     accountId: uuid().references(() => accounts.id),
     email: text(),
-    language: text().notNull().default("en"),
+    language: text().$type<"en" | "de">().notNull().default("en"),
     deliveryMethod: deliveryMethod().notNull(),
     deliveryAddress: jsonb().$type<AddressJson>(),
     deliveryCountry: text().notNull(),

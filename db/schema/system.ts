@@ -28,7 +28,7 @@ export const emails = pgTable(
     kind: text().notNull(),
     dedupeKey: text().notNull(),
     recipient: text().notNull(),
-    language: text().notNull().default("en"),
+    language: text().$type<"en" | "de">().notNull().default("en"),
     payload: jsonb().$type<Record<string, string | number>>().notNull(),
     messageId: text().notNull().unique(),
     state: emailState().notNull().default("waiting"),

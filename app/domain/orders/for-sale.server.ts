@@ -1,7 +1,7 @@
 import type { Database } from "db/client.server";
 import { copies, editions, formats, papers, priceSteps, printPictures, prints } from "db/schema/schema";
 import { and, asc, eq, inArray, isNull, sql } from "drizzle-orm";
-import { countAgainstCap } from "~/domain/editions/cap";
+import { CAP_OF_COPIES, countAgainstCap } from "~/domain/editions/cap";
 import { sheetMassGrams } from "~/domain/imaging/sizes";
 import { type PriceStep, priceOf } from "~/domain/pricing/ladder";
 
@@ -119,7 +119,7 @@ export async function formatsForSale(
         free: free
           .filter((c) => c.editionId === edition.id)
           .map((c) => ({ copyId: c.id, number: c.number, returned: c.checkCode !== null })),
-        worksOfArt: count.every((p) => (counted.get(p.frameId) ?? 0) <= 30),
+        worksOfArt: count.every((p) => (counted.get(p.frameId) ?? 0) <= CAP_OF_COPIES),
       };
       return [format.id, sale] as const;
     }),

@@ -1,16 +1,13 @@
 import { db, inTransaction, sqlState, type Tx, violatedConstraint } from "db/client.server";
-import { type AddressJson, copies, holds, orderEvents, orderLines, orders, parties } from "db/schema/schema";
-import { and, asc, eq, inArray } from "drizzle-orm";
-import { isoDayInZone } from "~/domain/dates";
+import { type AddressJson, orders, parties } from "db/schema/schema";
+import { eq } from "drizzle-orm";
 import { lockEditions } from "~/domain/editions/ledger.server";
 import { theStudio } from "~/domain/studio/studio.server";
 import type { Language } from "~/languages/language";
 import { now } from "~/platform/clock";
-import { linkToken, newId, newLinkToken } from "~/platform/ids.server";
-import { enqueue } from "~/platform/queue.server";
+import { linkToken, newId } from "~/platform/ids.server";
 import { type FormatForSale, formatsForSale, priceOfFree } from "./for-sale.server";
-import { loadPriceTables } from "./tables.server";
-import { orderTotals } from "./totals";
+import { type ChosenLine, writeHeldOrder } from "./write-order.server";
 
 export type PlaceOrderInput = {
   /** Made with the form; a second submit of it is the same order. */
@@ -34,13 +31,7 @@ export type PlaceOrderOutcome =
   | { kind: "not_delivered"; reason: string }
   | { kind: "empty" };
 
-type Chosen = {
-  format: FormatForSale;
-  copyId: string;
-  number: number;
-  ladderAmount: number;
-  seenAmount: number;
-};
+type Chosen = ChosenLine & { seenAmount: number };
 
 /** Thrown inside the transaction to undo it and answer with an outcome. */
 class Undo extends Error {
@@ -71,91 +62,24 @@ export async function placeOrder(input: PlaceOrderInput): Promise<PlaceOrderOutc
       const formats = new Map((await formatsForSale(tx.db, formatIds, at)).map((f) => [f.formatId, f]));
       const chosen = chooseNumbers(input.lines, formats);
       if (chosen.kind === "gone") throw new Undo(chosen);
-      const totals = orderTotals(
-        {
-          homeCountry: studio.country,
-          country: input.country,
-          ...(input.delivery.method === "delivery" && input.delivery.address.region !== undefined
-            ? { region: input.delivery.address.region }
-            : {}),
-          at: isoDayInZone(at, studio.zone),
-          method: input.delivery.method,
-          lines: chosen.lines.map((c, i) => ({
-            id: String(i),
-            gross: c.ladderAmount,
-            worksOfArt: c.format.worksOfArt,
-            sheetWidthMm: c.format.sheetWidthMm,
-            sheetHeightMm: c.format.sheetHeightMm,
-            grams: c.format.grams,
-            pieces: c.format.pictures,
-          })),
-        },
-        await loadPriceTables(tx.db),
-      );
-      const { delivery } = totals;
-      if (delivery.kind === "not_delivered") throw new Undo(delivery);
-
-      const pricesToAccept = chosen.lines.some((c) => c.ladderAmount > c.seenAmount);
-      const holdUntil = new Date(at.getTime() + studio.holdMinutes * 60_000);
-      const orderId = newId();
-      const link = newLinkToken("order");
-      const partyId = await partyOf(tx, input);
-      const [order] = await tx.db
-        .insert(orders)
-        .values({
-          id: orderId,
-          submissionKey: input.submissionKey,
-          channel: "shop",
-          buyerPartyId: partyId,
-          accountId: input.accountId,
-          email: input.buyer.email,
-          language: input.language,
-          deliveryMethod: input.delivery.method,
-          deliveryAddress: input.delivery.method === "delivery" ? input.delivery.address : null,
-          deliveryCountry: input.country,
-          currency: studio.currency,
-          deliveryAmount: delivery.amount,
-          deliveryNet: delivery.net,
-          deliveryTax: delivery.tax,
-          deliveryTaxSnapshot: delivery.snapshot,
-          deliveryDaysFrom: delivery.daysFrom,
-          deliveryDaysTo: delivery.daysTo,
-          totalAmount: totals.total,
-          totalTax: totals.tax,
-          buyerNote: input.note,
-          tokenSeed: link.seed,
-          tokenHash: link.hash,
-          createdAt: at,
-          holdUntil,
-          pricesAcceptedAt: pricesToAccept ? null : at,
-        })
-        .returning({ id: orders.id });
-      if (order === undefined) throw new Error("the order was not written");
-      for (const [position, c] of chosen.lines.entries()) {
-        const priced = totals.lines[position];
-        if (priced === undefined) throw new Error(`line ${position} has no price`);
-        await holdCopy(tx, {
-          lineId: newId(),
-          orderId,
-          position,
-          editionId: c.format.editionId,
-          formatId: c.format.formatId,
-          copyId: c.copyId,
-          ladderAmount: c.ladderAmount,
-          reductionAmount: 0,
-          reductionReason: null,
-          amount: priced.amount,
-          net: priced.net,
-          tax: priced.tax,
-          taxSnapshot: priced.snapshot,
-          currency: studio.currency,
-          heldAt: at,
-          until: holdUntil,
-        });
-      }
-      await tx.db.insert(orderEvents).values({ orderId, kind: "placed", at, visibleToBuyer: true });
-      await enqueue("end-hold", { orderId }, { client: tx.client, startAfter: holdUntil });
-      return { kind: "placed", orderId, token: link.token, pricesToAccept };
+      const written = await writeHeldOrder(tx, {
+        submissionKey: input.submissionKey,
+        channel: "shop",
+        buyerPartyId: () => partyOf(tx, input),
+        accountId: input.accountId,
+        email: input.buyer.email,
+        language: input.language,
+        delivery: input.delivery,
+        country: input.country,
+        buyerNote: input.note,
+        studioNote: "",
+        lines: chosen.lines,
+        at,
+        holdUntil: new Date(at.getTime() + studio.holdMinutes * 60_000),
+        pricesToAccept: chosen.lines.some((c) => c.ladderAmount > c.seenAmount),
+      });
+      if (written.kind === "not_delivered") throw new Undo(written);
+      return { ...written, pricesToAccept: chosen.lines.some((c) => c.ladderAmount > c.seenAmount) };
     });
   } catch (error) {
     if (error instanceof Undo) return error.outcome;
@@ -191,34 +115,15 @@ function chooseNumbers(
     chosen.push({
       format,
       copyId: copy.copyId,
-      number: copy.number,
       ladderAmount,
+      reductionAmount: 0,
+      reductionReason: null,
       seenAmount: line.seenAmount,
     });
   }
   const unknown = lines.filter((l) => !formats.has(l.formatId));
   for (const line of unknown) gone.push({ formatId: line.formatId, title: "", slug: "" });
   return gone.length > 0 ? { kind: "gone", gone, remaining } : { kind: "chosen", lines: chosen };
-}
-
-export type HeldLine = {
-  lineId: string;
-  heldAt: Date;
-  until: Date;
-} & Omit<typeof orderLines.$inferInsert, "id" | "state">;
-
-/** Writes an order line and holds its copy for it; the caller has locked the edition and chosen the copy. */
-export async function holdCopy(tx: Tx, line: HeldLine): Promise<void> {
-  const { lineId, heldAt, until, ...values } = line;
-  await tx.db.insert(orderLines).values({ id: lineId, state: "held", ...values });
-  const moved = await tx.db
-    .update(copies)
-    .set({ placement: "held", formatId: line.formatId, orderLineId: lineId })
-    .where(and(eq(copies.id, line.copyId), inArray(copies.placement, ["in_hand", "set_aside"])))
-    .returning({ id: copies.id });
-  if (moved.length !== 1)
-    throw new Error(`copy ${line.copyId} was not in hand although its edition is locked`);
-  await tx.db.insert(holds).values({ id: newId(), copyId: line.copyId, orderLineId: lineId, heldAt, until });
 }
 
 /** The order a submission has already made, if any. */
@@ -253,14 +158,4 @@ async function partyOf(tx: Tx, input: PlaceOrderInput): Promise<string> {
     address: input.delivery.method === "delivery" ? input.delivery.address : null,
   });
   return id;
-}
-
-/** The live lines of an order with their copies' numbers, in order. */
-export function linesOf(tx: Tx, orderId: string) {
-  return tx.db
-    .select({ line: orderLines, run: copies.run, number: copies.number, placement: copies.placement })
-    .from(orderLines)
-    .innerJoin(copies, eq(copies.id, orderLines.copyId))
-    .where(eq(orderLines.orderId, orderId))
-    .orderBy(asc(orderLines.position));
 }

@@ -1,1 +1,4 @@
-export const checkout = {};
+export const checkout = {
+  delivery: "Versand",
+  paymentDeadline: "Ihre Nummern sind bis {time} für Sie zurückgelegt.",
+};

@@ -1,1 +1,5 @@
-export const checkout = {};
+export const checkout = {
+  delivery: "Delivery",
+  /** On the payment page, beside its button. {time} names its zone. */
+  paymentDeadline: "Your numbers are held for you until {time}.",
+};

@@ -1,0 +1,6 @@
+// PLACEHOLDER_ROUTE
+import { Outlet } from "react-router";
+
+export default function Layout() {
+  return <Outlet />;
+}

@@ -1,0 +1,6 @@
+// PLACEHOLDER_ROUTE
+import { AppError } from "~/platform/errors";
+
+export function loader() {
+  throw new AppError("not_found");
+}
