@@ -115,10 +115,12 @@ export const flag = z.enum(["true", "false"]).transform((value) => value === "tr
 /** Only "switched off" is understood: what it would switch on is not part of this fake. */
 export const off = z.strictObject({ enabled: z.literal("false") });
 
+const CURRENCIES = new Set(Intl.supportedValuesOf("currency"));
+
 export const currencyCode = z
   .string()
   .transform((value) => value.toLowerCase())
-  .refine((value) => Intl.supportedValuesOf("currency").includes(value.toUpperCase()), {
+  .refine((value) => CURRENCIES.has(value.toUpperCase()), {
     error: "must be an ISO 4217 currency code",
   });
 

@@ -4,10 +4,11 @@ import { html, Markup } from "./markup";
 import type { SessionRecord } from "./store";
 import { filled, type Language, WORDINGS, type Wording } from "./wording";
 
-/** What was filled in, as it is shown again. The check digits are never given back. */
+/** What was filled in, as it is shown again. */
 export type Answers = {
   card_number: string;
   card_expiry: string;
+  card_cvc: string;
   card_name: string;
   email: string;
   shipping_option: string;
@@ -15,7 +16,6 @@ export type Answers = {
 export type Mistakes = CardMistakes & { name?: true; email?: true };
 export type PageState = {
   answers?: Partial<Answers>;
-  cvc?: string;
   mistakes?: Mistakes;
   /** The decline of the last try, as Stripe's decline code. */
   declined?: string | null;
@@ -50,7 +50,7 @@ function grouped(digits: string): string {
     : digits.replace(/(.{4})(?=.)/g, "$1 ");
 }
 
-function page(language: Language, title: string, body: Markup): string {
+function page(language: Language, title: string, body: Markup, kind: "full" | "short" = "short"): string {
   const words = WORDINGS[language];
   return html`<!doctype html>
 <html lang="${language}">
@@ -63,8 +63,8 @@ function page(language: Language, title: string, body: Markup): string {
 <link rel="stylesheet" href="/assets/payment-page.css">
 </head>
 <body>
-<p class="test" role="note"><strong>${words.test}.</strong> ${words.testMore}</p>
-<main>
+<header class="test"><p><strong>${words.test}.</strong> ${words.testMore}</p></header>
+<main class="${kind}">
 ${body}
 </main>
 </body>
@@ -141,18 +141,22 @@ ${mistake ? html`<span class="wrong" id="${name}-wrong">${mistake}</span>` : nul
 function deliveries(record: SessionRecord, language: Language, chosen: string): Markup | null {
   if (record.shippingRates.length < 2) return null;
   const words = WORDINGS[language];
+  const { session } = record;
+  const currency = session.currency ?? "";
   return html`<fieldset>
 <legend>${words.chooseDelivery}</legend>
-${record.shippingRates.map(
-  (rate, at) => html`<label class="choice"><input type="radio" name="shipping_option" value="${at}"${
+${record.shippingRates.map((rate, at) => {
+  const amount = rate.fixed_amount?.amount ?? 0;
+  const sum = money((session.amount_subtotal ?? 0) + amount, currency, language);
+  return html`<label class="choice"><input type="radio" name="shipping_option" value="${at}"${
     String(at) === chosen ? new Markup(" checked") : null
-  }> <span>${rate.display_name ?? ""}</span> <span>${money(
-    rate.fixed_amount?.amount ?? 0,
-    record.session.currency ?? "",
+  }> <span>${rate.display_name ?? ""} <small>${filled(words.inAll, { amount: sum })}</small></span> <span>${money(
+    amount,
+    currency,
     language,
   )}</span></label>
-`,
-)}
+`;
+})}
 </fieldset>`;
 }
 
@@ -177,13 +181,14 @@ ${TEST_CARDS.map(
 }
 
 /** The answers a link in the list of test cards fills in. `now` is in milliseconds. */
-export function answersFor(number: string, now: number): { answers: Partial<Answers>; cvc: string } | null {
+export function answersFor(number: string, now: number): Partial<Answers> | null {
   const card = TEST_CARDS.find((known) => known.number === number);
   if (!card) return null;
   const year = (new Date(now).getUTCFullYear() + 3) % 100;
   return {
-    answers: { card_number: grouped(card.number), card_expiry: `12/${String(year).padStart(2, "0")}` },
-    cvc: card.brand === "amex" ? "1234" : "123",
+    card_number: grouped(card.number),
+    card_expiry: `12/${String(year).padStart(2, "0")}`,
+    card_cvc: card.brand === "amex" ? "1234" : "123",
   };
 }
 
@@ -211,7 +216,11 @@ export function payPage(record: SessionRecord, language: Language, state: PageSt
     cvc: note("card_cvc", mistakes.cvc && words.cvcWrong),
     name: note("card_name", mistakes.name && words.nameMissing),
   };
-  const title = filled(words.pay, { amount: total(session, language) });
+  // Without scripts the sum cannot follow the choice of a delivery: each choice names its own.
+  const title =
+    record.shippingRates.length > 1
+      ? words.payChosen
+      : filled(words.pay, { amount: total(session, language) });
   const submit = session.custom_text.submit?.message;
   const until = new Intl.DateTimeFormat(language === "de" ? "de-DE" : "en-GB", {
     dateStyle: "long",
@@ -272,7 +281,7 @@ ${field({
   label: words.cvc,
   hint: words.cvcHint,
   mistake: wrong.cvc,
-  value: state.cvc ?? "",
+  value: answers.card_cvc ?? "",
   autocomplete: "cc-csc",
   numeric: true,
 })}
@@ -291,7 +300,7 @@ ${session.cancel_url ? html`<p class="leave"><a href="${session.cancel_url}">${w
 </section>
 </div>
 ${cards(session.id, language)}`;
-  return page(language, title, body);
+  return page(language, title, body, "full");
 }
 
 /** The question of the card's bank. */

@@ -402,9 +402,9 @@ export function createStripeFake(options: StripeFakeOptions): StripeFake {
     if (!posted || !record || !isOpen) {
       if (posted && record?.session.status === "complete") goTo(response, successAddress(record.session));
       else {
-        const offered = answersFor(url.searchParams.get("card") ?? "", now()) ?? {};
+        const answers = answersFor(url.searchParams.get("card") ?? "", now());
         const declined = record && url.searchParams.has("again") ? lastDecline(record) : null;
-        showSession(response, record, acceptLanguage, { ...offered, declined });
+        showSession(response, record, acceptLanguage, { declined, ...(answers && { answers }) });
       }
       return;
     }
@@ -412,12 +412,13 @@ export function createStripeFake(options: StripeFakeOptions): StripeFake {
     const answers = {
       card_number: field("card_number"),
       card_expiry: field("card_expiry"),
+      card_cvc: field("card_cvc"),
       card_name: field("card_name"),
       email: field("email"),
       shipping_option: /^\d$/.test(field("shipping_option")) ? field("shipping_option") : "0",
     };
     const read = readCard(
-      { number: answers.card_number, expiry: answers.card_expiry, cvc: field("card_cvc") },
+      { number: answers.card_number, expiry: answers.card_expiry, cvc: answers.card_cvc },
       now(),
     );
     const mistakes: Mistakes = "mistakes" in read ? { ...read.mistakes } : {};

@@ -248,6 +248,9 @@ describe("checkout sessions through the SDK", () => {
       shipping_cost: { amount_total: 1_200 },
       total_details: { amount_shipping: 1_200 },
     });
+    const page = await (await fetch(session.url ?? "")).text();
+    expect(page).toContain("€262.00 in all");
+    expect(page).toContain("€284.00 in all");
     const paid = await submit(session.url, "4242424242424242", { shipping_option: "1" });
     expect(paid.status).toBe(303);
     const read = await stripe.checkout.sessions.retrieve(session.id, { expand: ["payment_intent"] });
