@@ -77,7 +77,7 @@ export const createSessionParameters = z.strictObject({
     .optional(),
   locale: text(10).optional(),
   expires_at: instant.optional(),
-  payment_method_types: z.array(text(50)).optional(),
+  allowed_payment_method_types: z.array(text(50)).optional(),
   custom_text: z
     .strictObject({
       after_submit: message,
@@ -183,7 +183,7 @@ export function createSession(
     subtotal: lineItems.reduce((sum, line) => sum + line.amount_total, 0),
     shipping: shippingRates,
     metadata: asked.metadata ?? {},
-    paymentMethodTypes: asked.payment_method_types ?? ["card"],
+    paymentMethodTypes: asked.allowed_payment_method_types ?? ["card"],
     successUrl: asked.success_url,
     cancelUrl: asked.cancel_url,
     customerEmail: asked.customer_email,

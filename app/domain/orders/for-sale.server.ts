@@ -62,34 +62,22 @@ export async function formatsForSale(
   const editionIds = [...new Set(rows.map((r) => r.edition.id))];
   const printIds = [...new Set(rows.map((r) => r.print.id))];
   if (editionIds.length === 0) return [];
-  const [steps, free, pictures, counted] = await Promise.all([
-    db
-      .select()
-      .from(priceSteps)
-      .where(and(inArray(priceSteps.formatId, wanted), isNull(priceSteps.supersededAt)))
-      .orderBy(asc(priceSteps.fromNumber)),
-    db
-      .select({
-        id: copies.id,
-        editionId: copies.editionId,
-        number: copies.number,
-        checkCode: copies.checkCode,
-      })
-      .from(copies)
-      .where(
-        and(
-          inArray(copies.editionId, editionIds),
-          eq(copies.run, "numbered"),
-          eq(copies.placement, "in_hand"),
-        ),
-      )
-      .orderBy(asc(copies.number)),
-    db
-      .select({ printId: printPictures.printId, frameId: printPictures.frameId })
-      .from(printPictures)
-      .where(inArray(printPictures.printId, printIds)),
-    copiesOfPictures(db, printIds),
-  ]);
+  // One after the other: inside a transaction there is one connection.
+  const steps = await db
+    .select()
+    .from(priceSteps)
+    .where(and(inArray(priceSteps.formatId, wanted), isNull(priceSteps.supersededAt)))
+    .orderBy(asc(priceSteps.fromNumber));
+  const free = await db
+    .select({ id: copies.id, editionId: copies.editionId, number: copies.number, checkCode: copies.checkCode })
+    .from(copies)
+    .where(and(inArray(copies.editionId, editionIds), eq(copies.run, "numbered"), eq(copies.placement, "in_hand")))
+    .orderBy(asc(copies.number));
+  const pictures = await db
+    .select({ printId: printPictures.printId, frameId: printPictures.frameId })
+    .from(printPictures)
+    .where(inArray(printPictures.printId, printIds));
+  const counted = await copiesOfPictures(db, printIds);
   const byFormat = new Map(
     rows.map(({ format, edition, print, paper }) => {
       const count = pictures.filter((p) => p.printId === print.id);

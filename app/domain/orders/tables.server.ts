@@ -5,11 +5,9 @@ import type { DeliveryRate } from "~/domain/shipping/delivery";
 
 /** The dated tables behind `taxFor` and `quoteDelivery`, as they stand. */
 export async function loadPriceTables(db: Database): Promise<{ tax: TaxTables; delivery: DeliveryRate[] }> {
-  const [registrations, rates, delivery] = await Promise.all([
-    db.select().from(vatRegistrations),
-    db.select().from(taxRates),
-    db.select().from(deliveryRates),
-  ]);
+  const registrations = await db.select().from(vatRegistrations);
+  const rates = await db.select().from(taxRates);
+  const delivery = await db.select().from(deliveryRates);
   return {
     tax: {
       registrations: registrations.map((r) => ({
