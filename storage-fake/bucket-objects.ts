@@ -129,12 +129,9 @@ export class BucketObjects {
 
   /** Reads all documents and removes data files that belong to none, which a crash can leave. */
   async load(): Promise<void> {
-    for (let shard = 0; shard < 256; shard++) {
-      const folder = path.join(this.folder, shard.toString(16).padStart(2, "0"));
-      await mkdir(folder, { recursive: true, mode: FOLDER_MODE });
-      await this.loadShard(folder);
-    }
-    await syncFolder(this.folder);
+    await mkdir(this.folder, { recursive: true, mode: FOLDER_MODE });
+    const shards = (await readdir(this.folder)).filter((name) => /^[0-9a-f]{2}$/.test(name));
+    await Promise.all(shards.map((name) => this.loadShard(path.join(this.folder, name))));
     this.sortedKeys = [...this.objects.keys()].sort(compareKeys);
   }
 
@@ -226,13 +223,21 @@ export class BucketObjects {
     }
   }
 
+  /** The folder for keys of a hash: one of 256, so that none grows too large to read. Made when first needed. */
+  private async shardOf(hash: string): Promise<string> {
+    const folder = path.join(this.folder, hash.slice(0, 2));
+    const created = await mkdir(folder, { recursive: true, mode: FOLDER_MODE });
+    if (created !== undefined) await syncFolder(this.folder);
+    return folder;
+  }
+
   private async replace(
     key: string,
     contents: readonly Contents[],
     facts: ObjectFacts,
   ): Promise<ObjectRecord> {
     const hash = hashKey(key);
-    const folder = path.join(this.folder, hash.slice(0, 2));
+    const folder = await this.shardOf(hash);
     const id = randomUUID();
     const segments = contents.map(
       (content, index): Segment => ({ file: `${hash}.${id}-${index + 1}.data`, size: content.size }),

@@ -46,7 +46,9 @@ export function readStorageSettings(
       "NUMBERLEAF_MODE is production: the stand-in for object storage does not run there. Set S3_ENDPOINT to the real one.",
     );
   }
-  const parsed = environmentSchema.safeParse(environment);
+  // A variable that is set to nothing counts as not set.
+  const given = Object.entries(environment).filter(([, value]) => value !== "");
+  const parsed = environmentSchema.safeParse(Object.fromEntries(given));
   if (!parsed.success) {
     const problems = parsed.error.issues.map((issue) => `${issue.path.join(".")}: ${issue.message}`);
     throw new StorageSettingsError(`The storage server's settings are wrong.\n${problems.join("\n")}`);
