@@ -1,3 +1,6 @@
+import { sweepSessions } from "~/domain/people/sessions.server";
+import { resendWaiting } from "~/emails/send.server";
+
 /** Something looked after again and again, so that nothing rests on a job that was never made or was lost. */
 export type Sweep = {
   name: string;
@@ -6,4 +9,7 @@ export type Sweep = {
   run(): Promise<void>;
 };
 
-export const SWEEPS: readonly Sweep[] = [];
+export const SWEEPS: readonly Sweep[] = [
+  { name: "owed-emails", everySeconds: 60, run: async () => void (await resendWaiting()) },
+  { name: "old-sessions", everySeconds: 3_600, run: async () => void (await sweepSessions()) },
+];

@@ -1,1 +1,60 @@
-export const emails = {};
+export const emails = {
+  common: {
+    greeting: "Guten Tag {name},",
+  },
+  verifyEmail: {
+    subject: "Bitte bestätigen Sie Ihre E-Mail-Adresse",
+    title: "Ist das Ihre Adresse?",
+    preview: "Ein Druck, und Ihr Konto ist vollständig.",
+    text: "Jemand, vermutlich Sie selbst, hat {email} als Adresse eines Kontos bei uns angegeben. Bitte bestätigen Sie, dass sie Ihnen gehört; dann zeigt Ihr Konto auch die Bestellungen, die Sie damit als Gast aufgegeben haben.",
+    press: "Diese Adresse bestätigen",
+    notYou:
+      "Wenn Sie es nicht waren, tun Sie nichts: Ohne Ihre Bestätigung sieht das Konto nichts von Ihnen. Der Link gilt sieben Tage.",
+    reason: "Sie erhalten dies, weil Ihre Adresse für ein Konto angegeben wurde.",
+  },
+  resetPassword: {
+    subject: "Ein neues Passwort für Ihr Konto",
+    title: "Wählen Sie ein neues Passwort",
+    preview: "Der Link gilt einmal, eine Stunde lang.",
+    text: "Sie haben ein neues Passwort für das Konto von {email} gewünscht. Der Link unten gilt einmal und eine Stunde lang. Sobald Sie gewählt haben, wird jeder Browser abgemeldet, der mit dem Konto angemeldet ist.",
+    press: "Neues Passwort wählen",
+    notYou: "Wenn Sie es nicht waren, tun Sie nichts: Ihr Passwort bleibt, wie es ist.",
+    reason: "Sie erhalten dies, weil ein neues Passwort gewünscht wurde.",
+  },
+  accountExists: {
+    subject: "Sie haben schon ein Konto bei uns",
+    title: "Sie haben schon ein Konto",
+    preview: "Jemand wollte mit Ihrer Adresse ein zweites anlegen.",
+    text: "Jemand, vermutlich Sie selbst, wollte mit {email} ein Konto anlegen. Es gibt schon eines, darum wurde nichts geändert: Melden Sie sich mit Ihrem Passwort an, oder wählen Sie ein neues, falls Sie es nicht zur Hand haben.",
+    press: "Anmelden",
+    forgotten: "Passwort vergessen? Hier wählen Sie ein neues: {link}",
+    reason: "Sie erhalten dies, weil Ihre Adresse für ein neues Konto angegeben wurde.",
+  },
+  emailChanged: {
+    subject: "Die E-Mail-Adresse Ihres Kontos wurde geändert",
+    title: "Ihre Adresse wurde geändert",
+    preview: "Post zu Ihrem Konto geht von nun an an die neue Adresse.",
+    text: "Das Konto, zu dem diese Adresse gehörte, hat jetzt eine andere. Wenn Sie das geändert haben, ist alles in Ordnung und nichts zu tun.",
+    notYou:
+      "Wenn Sie es nicht waren, schreiben Sie dem Atelier bitte sofort: Vielleicht kennt jemand anderes Ihr Passwort.",
+    reason: "Sie erhalten dies, weil Ihre Adresse bis jetzt zu einem Konto gehörte.",
+  },
+  invitation: {
+    subject: "{inviter} lädt Sie zur Mitarbeit bei {studio} ein",
+    title: "Eine Einladung",
+    preview: "Wählen Sie ein Passwort, und Sie sind dabei.",
+    text: "{inviter} lädt Sie zu {studio} ein, als {role}. Folgen Sie dem Link, prüfen Sie die Schreibweise Ihres Namens und wählen Sie ein Passwort.",
+    until: "Die Einladung gilt bis {time}.",
+    press: "Einladung annehmen",
+    notYou: "Wenn Sie nicht wissen, worum es geht, tun Sie nichts: Der Link läuft von selbst ab.",
+    reason: "Sie erhalten dies, weil {inviter} Ihre Adresse eingetragen hat.",
+    roles: {
+      photographer: "Fotografin oder Fotograf",
+      assistant: "Assistenz",
+      printer: "Druckwerkstatt",
+      stockist: "Galerie",
+      bookkeeper: "Buchhaltung",
+      collector: "Sammlerin oder Sammler",
+    },
+  },
+};

@@ -1,1 +1,59 @@
-export const emails = {};
+export const emails = {
+  common: {
+    greeting: "Dear {name},",
+  },
+  verifyEmail: {
+    subject: "Please confirm your e-mail address",
+    title: "Is this your address?",
+    preview: "One press, and your account is complete.",
+    text: "Somebody, probably you, has given {email} as the address of an account with us. Please confirm that it is yours; then your account also shows the orders you have made with it as a guest.",
+    press: "Confirm this address",
+    notYou:
+      "If it was not you, do nothing: without your confirmation the account sees nothing of yours. The link works for seven days.",
+    reason: "You get this because your address was given for an account.",
+  },
+  resetPassword: {
+    subject: "A new password for your account",
+    title: "Choose a new password",
+    preview: "The link works once, for an hour.",
+    text: "You asked for a new password for the account of {email}. The link below works once and for one hour. When you have chosen, every browser that is signed in to the account is signed out.",
+    press: "Choose a new password",
+    notYou: "If it was not you, do nothing: your password stays as it is.",
+    reason: "You get this because a new password was asked for.",
+  },
+  accountExists: {
+    subject: "You already have an account with us",
+    title: "You already have an account",
+    preview: "Somebody tried to make a second one with your address.",
+    text: "Somebody, probably you, tried to make an account with {email}. There is one already, so nothing was changed: sign in with your password, or choose a new one if you do not have it at hand.",
+    press: "Sign in",
+    forgotten: "Forgotten the password? Choose a new one here: {link}",
+    reason: "You get this because your address was given for a new account.",
+  },
+  emailChanged: {
+    subject: "The e-mail address of your account was changed",
+    title: "Your address was changed",
+    preview: "From now on, letters about your account go to the new address.",
+    text: "The account that belonged to this address now has another one. If you changed it, all is well and there is nothing to do.",
+    notYou: "If it was not you, please write to the studio at once: somebody else may have your password.",
+    reason: "You get this because your address belonged to an account until now.",
+  },
+  invitation: {
+    subject: "{inviter} invites you to work with {studio}",
+    title: "An invitation",
+    preview: "Choose a password and you are in.",
+    text: "{inviter} invites you to {studio} as {role}. Follow the link, check how your name is written and choose a password.",
+    until: "The invitation holds until {time}.",
+    press: "Accept the invitation",
+    notYou: "If you do not know what this is about, do nothing: the link runs out by itself.",
+    reason: "You get this because {inviter} has entered your address.",
+    roles: {
+      photographer: "photographer",
+      assistant: "assistant",
+      printer: "printer",
+      stockist: "stockist",
+      bookkeeper: "bookkeeper",
+      collector: "collector",
+    },
+  },
+};

@@ -1,0 +1,28 @@
+import type { z } from "zod";
+import type { Language } from "~/languages/language";
+import { accountExists } from "./account-exists";
+import type { BuiltEmail } from "./built-email";
+import { emailChanged } from "./email-changed";
+import { invitation } from "./invitation";
+import { type EmailKind, EMAIL_PAYLOADS as payloads } from "./kinds";
+import { resetPassword } from "./reset-password";
+import { verifyEmail } from "./verify-email";
+
+/** Checks a row's payload, then builds. */
+type Build = (payload: unknown, language: Language) => Promise<BuiltEmail | null>;
+
+function from<S extends z.ZodType>(
+  schema: S,
+  build: (payload: z.output<S>, language: Language) => Promise<BuiltEmail | null>,
+): Build {
+  return (payload, language) => build(schema.parse(payload), language);
+}
+
+/** One builder (see `built-email.ts`) for every kind in `kinds.ts`. */
+export const BUILDERS: Record<EmailKind, Build> = {
+  "verify-email": from(payloads["verify-email"], verifyEmail),
+  "reset-password": from(payloads["reset-password"], resetPassword),
+  "account-exists": from(payloads["account-exists"], accountExists),
+  "email-changed": from(payloads["email-changed"], emailChanged),
+  invitation: from(payloads.invitation, invitation),
+};
