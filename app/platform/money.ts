@@ -191,20 +191,32 @@ export function decimalText(a: Money): string {
   return a.amount < 0 ? `-${whole}` : whole;
 }
 
-/**
- * The amount as a reader of a language writes it, with the currency and all its ISO 4217 decimals: "£12,950.00",
- * "12.950,00 €", "¥12,000". The language is a BCP 47 tag. Exact for every amount.
- */
-export function formatMoney(a: Money, languageTag: string): string {
-  const exponent = minorUnits(a.currency);
-  const text = decimalText(a);
-  if (!isNumeric(text)) throw new RangeError(`${text} is not a decimal.`);
-  return new Intl.NumberFormat(languageTag, {
+/** Making a formatter costs far more than using it, and a page shows dozens of prices. */
+const formatters = new Map<string, Intl.NumberFormat>();
+
+function formatterFor(currency: CurrencyCode, languageTag: string): Intl.NumberFormat {
+  const key = `${languageTag} ${currency}`;
+  const known = formatters.get(key);
+  if (known !== undefined) return known;
+  const exponent = minorUnits(currency);
+  const made = new Intl.NumberFormat(languageTag, {
     style: "currency",
-    currency: a.currency,
+    currency,
     minimumFractionDigits: exponent,
     maximumFractionDigits: exponent,
-  }).format(text);
+  });
+  formatters.set(key, made);
+  return made;
+}
+
+/**
+ * The amount as a reader of a language writes it, with the currency and all its ISO 4217 decimals: "£12,950.00",
+ * "12.950,00 €", "¥12,000". The language is a BCP 47 tag of the shop's own. Exact for every amount.
+ */
+export function formatMoney(a: Money, languageTag: string): string {
+  const text = decimalText(a);
+  if (!isNumeric(text)) throw new RangeError(`${text} is not a decimal.`);
+  return formatterFor(a.currency, languageTag).format(text);
 }
 
 /** Why a text was not taken as an amount. The words belong to the caller, who knows the reader's language. */
