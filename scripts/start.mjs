@@ -315,7 +315,7 @@ async function answers(address, name, stillRunning) {
     } catch (error) {
       last = error instanceof Error ? error.message : String(error);
     }
-    await delay(50);
+    await delay(100);
   }
   throw new PlainError(`${name} did not answer at ${address}: ${last}`);
 }

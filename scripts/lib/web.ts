@@ -75,13 +75,12 @@ export function createWeb({ clientDirectory, handler, trustProxy, logger }: WebO
 }
 
 /** Gives the request its id (a trusted proxy's, if it sent one) and the address it came from. */
-const identify: RequestHandler = (request, response, next) => {
+const identify: RequestHandler = (request, _response, next) => {
   const sent = request.headers["x-request-id"];
   const believed = fromTrustedProxy(request) && typeof sent === "string" && /^[\w.-]{8,64}$/.test(sent);
   const id = believed ? sent : randomUUID();
   request.headers[REQUEST_ID] = id;
   request.headers[CLIENT_IP] = request.ip ?? "unknown";
-  response.setHeader("X-Request-Id", id);
   next();
 };
 
@@ -137,6 +136,7 @@ function failed(logger: WebOptions["logger"]): ErrorRequestHandler {
     if (response.headersSent) return next(error);
     response
       .status(status)
+      .set("X-Request-Id", String(request.headers[REQUEST_ID]))
       .type("text/plain")
       .send(status >= 500 ? "Something went wrong.\n" : "This request cannot be understood.\n");
   };
