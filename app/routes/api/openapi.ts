@@ -1,6 +1,8 @@
-// PLACEHOLDER_ROUTE
-import { AppError } from "~/platform/errors";
+import { openApiDescription } from "~/domain/prints/public-api";
+import { publicJson } from "~/platform/api-answers.server";
+import { env } from "~/platform/env.server";
+import type { Route } from "./+types/openapi";
 
-export function loader() {
-  throw new AppError("not_found");
+export function loader({ request }: Route.LoaderArgs) {
+  return publicJson(request, openApiDescription(env.BASE_URL));
 }
