@@ -1,5 +1,5 @@
 /**
- * What the demo studio has on film: three rolls, and the prints chosen from them.
+ * What the demo studio has on film: four rolls, and the prints chosen from them.
  *
  * Everything here is invented. `scene` and `seed` tell the renderer what to draw; the rest is what a
  * photographer would write on the sleeve. Exposures are for film of ISO 125 in the light described,
@@ -40,6 +40,10 @@ export type CatalogueFrame = {
 export type CatalogueRoll = {
   number: number;
   format: FilmFormat;
+  /** how many frames the film holds; fewer may have been scanned */
+  capacity: number;
+  /** the renderer's glass, where it is not the scene's own */
+  lens?: "pinhole";
   camera: string;
   film: string;
   exposedOn: ExposedOn;
@@ -71,7 +75,7 @@ export type CataloguePrint = {
   series: SeriesSlug;
 };
 
-/** Two letters and digits that name a frame everywhere in the demo: "203-04". */
+/** The number of the roll and the place on it, which name a frame everywhere in the demo: "203-04". */
 export function frameKey({ roll, position }: FrameRef): string {
   return `${roll}-${String(position).padStart(2, "0")}`;
 }
@@ -82,6 +86,7 @@ export const rolls: CatalogueRoll[] = [
   {
     number: 187,
     format: "6x6",
+    capacity: 12,
     camera: "6x6 twin-lens camera, 80 mm",
     film: "ISO 125 traditional film, 120",
     exposedOn: { date: "2021-11-14", precision: "day" },
@@ -91,10 +96,10 @@ export const rolls: CatalogueRoll[] = [
       {
         position: 1,
         scene: "bridge",
-        seed: 7,
+        seed: 4,
         width: 3000,
         place: "Amberley Locks",
-        note: "First of three at Bridge 11, from the far bank. Arch not yet clear of the fog.",
+        note: "Bridge 11 from the far bank. Fog thick beyond the arch; nothing behind it yet.",
         exposure: { aperture: 16, timeSeconds: 1 / 2, light: "Fog before sunrise, no direction to it" },
       },
       {
@@ -159,34 +164,29 @@ export const rolls: CatalogueRoll[] = [
         position: 7,
         scene: "reeds",
         seed: 8,
-        width: 2400,
+        width: 3000,
         place: "Mill Pond, Saint Orrin's",
         note: "From the other side of the sluice. Busier, less good.",
         exposure: { aperture: 11, timeSeconds: 1 / 15, light: "White sky, even" },
       },
       {
         position: 8,
-        scene: "poplars",
-        seed: 5,
+        scene: "milestone",
+        seed: 6,
         width: 3000,
-        title: "Poplars, the Long Pound",
-        place: "Long Pound, Amberley",
-        note: "Tripod in the water at the margin. Gap in the row where one came down last winter.",
-        exposure: {
-          aperture: 22,
-          timeSeconds: 15,
-          filter: "6-stop neutral",
-          light: "Bright overcast, cloud moving left",
-        },
+        title: "Milestone, Thorn Lane",
+        place: "Thorn Lane",
+        note: "Nine miles, to where it does not say. Close-up lens, wide open for the hedge behind.",
+        exposure: { aperture: 4, timeSeconds: 1 / 125, light: "White sky, a little from the left" },
       },
       {
         position: 9,
-        scene: "poplars",
-        seed: 8,
-        width: 2400,
-        place: "Long Pound, Amberley",
-        note: "Whole row from further along. Light going; two stops more.",
-        exposure: { aperture: 22, timeSeconds: 40, filter: "6-stop neutral", light: "Overcast, darker" },
+        scene: "milestone",
+        seed: 4,
+        width: 3000,
+        place: "Thorn Lane",
+        note: "The next stone along. Grass longer, letters shallower.",
+        exposure: { aperture: 4, timeSeconds: 1 / 125, light: "White sky, a little from the left" },
       },
       {
         position: 10,
@@ -231,11 +231,12 @@ export const rolls: CatalogueRoll[] = [
   {
     number: 203,
     format: "6x7",
+    capacity: 10,
     camera: "6x7 folding camera, 90 mm",
     film: "ISO 125 traditional film, 120",
     exposedOn: { date: "2023-01-01", precision: "month" },
     notes:
-      "January, three outings. Fog in Pell Wood, the hard frost of the second week, and a clear night at the mill pond. Normal development.",
+      "January, four outings. Fog in Pell Wood, the thaw after the second week's snow, and a clear night at the mill pond. Normal development.",
     frames: [
       {
         position: 1,
@@ -275,19 +276,18 @@ export const rolls: CatalogueRoll[] = [
       },
       {
         position: 4,
-        scene: "fern",
-        seed: 5,
-        width: 2400,
-        upright: true,
-        title: "Ferns, Pell Wood",
+        scene: "ranks",
+        seed: 1,
+        width: 3000,
+        title: "Ranks, Pell Wood",
         place: "Pell Wood",
-        note: "Shield fern, green all winter. Wide open for the ground behind. Close-up lens, two thirds of a stop.",
-        exposure: { aperture: 5.6, timeSeconds: 1 / 4, light: "Open shade under bare trees" },
+        note: "Long lens from across the dell, ground left out. Counted nine trees deep on the glass.",
+        exposure: { aperture: 22, timeSeconds: 1, light: "Fog, even, no shadows at all" },
       },
       {
         position: 5,
         scene: "drove",
-        seed: 5,
+        seed: 10,
         width: 2400,
         upright: true,
         title: "The Drove, January",
@@ -300,10 +300,10 @@ export const rolls: CatalogueRoll[] = [
         scene: "orchard",
         seed: 6,
         width: 3000,
-        title: "Old Orchard, Hoar Frost",
+        title: "Old Orchard, Thaw",
         place: "Orchard at Thorn Lane",
-        note: "Every twig white. Orange filter to bring the sky down behind it.",
-        exposure: { aperture: 22, timeSeconds: 1 / 2, filter: "orange", light: "Clear, sun an hour up" },
+        note: "Snow going from between the rows first. Mist coming up off it as I set up.",
+        exposure: { aperture: 22, timeSeconds: 1 / 4, light: "Overcast, mist rising" },
       },
       {
         position: 7,
@@ -363,8 +363,59 @@ export const rolls: CatalogueRoll[] = [
     ],
   },
   {
+    number: 209,
+    format: "6x6",
+    capacity: 12,
+    lens: "pinhole",
+    camera: "6x6 pinhole, 50 mm at f/192",
+    film: "ISO 125 traditional film, 120",
+    exposedOn: { date: "2023-11-19", precision: "day" },
+    notes:
+      "The box camera that was my father's. Only the first four; the back came open on the bus and the rest is fog of the wrong kind.",
+    frames: [
+      {
+        position: 1,
+        scene: "orchard",
+        seed: 4,
+        width: 2400,
+        place: "Orchard at Thorn Lane",
+        note: "Camera on the ground, on a brick. 8 s metered, 15 given.",
+        exposure: { aperture: 192, timeSeconds: 15, light: "Overcast, first light snow" },
+      },
+      {
+        position: 2,
+        scene: "drove",
+        seed: 2,
+        width: 2400,
+        place: "The Drove, above Thorn Lane",
+        note: "Counted thirty. A dog went through it twice and is not there.",
+        exposure: { aperture: 192, timeSeconds: 30, light: "Fog" },
+      },
+      {
+        position: 3,
+        scene: "poplars",
+        seed: 9,
+        width: 2400,
+        place: "Long Pound, Amberley",
+        note: "Whole row. Light going.",
+        exposure: { aperture: 192, timeSeconds: 40, light: "Overcast, darker" },
+      },
+      {
+        position: 4,
+        scene: "poplars",
+        seed: 4,
+        width: 3000,
+        title: "Poplars, Pinhole",
+        place: "Long Pound, Amberley",
+        note: "Nearer, and the gap where one came down last winter. 25 s metered, 68 given.",
+        exposure: { aperture: 192, timeSeconds: 68, light: "Overcast, an hour before dusk" },
+      },
+    ],
+  },
+  {
     number: 214,
     format: "6x9",
+    capacity: 8,
     camera: "6x9 folding camera, 105 mm",
     film: "ISO 125 traditional film, 120",
     exposedOn: { date: "2024-02-01", precision: "month" },
@@ -402,7 +453,7 @@ export const rolls: CatalogueRoll[] = [
       {
         position: 4,
         scene: "thorn",
-        seed: 7,
+        seed: 6,
         width: 3000,
         place: "Hag Down",
         note: "The thorn from the dew pond. Cloud coming fast over the top.",
@@ -411,7 +462,7 @@ export const rolls: CatalogueRoll[] = [
       {
         position: 5,
         scene: "thorn",
-        seed: 5,
+        seed: 12,
         width: 6000,
         title: "Thorn, Hag Down",
         place: "Hag Down",
@@ -420,7 +471,7 @@ export const rolls: CatalogueRoll[] = [
           aperture: 16,
           timeSeconds: 57,
           filter: "10-stop neutral",
-          light: "Bright, cloud thinning",
+          light: "Bright, cloud breaking up",
         },
       },
       {
@@ -450,9 +501,9 @@ export const rolls: CatalogueRoll[] = [
       {
         position: 8,
         scene: "snow",
-        seed: 2,
+        seed: 10,
         width: 3000,
-        title: "Wall and Snowfield",
+        title: "Fence in Snow",
         place: "Hag Down, south slope",
         note: "A week later. One and a third stops over the meter to keep the snow white.",
         exposure: {
@@ -533,17 +584,6 @@ export const prints: CataloguePrint[] = [
     series: "low-water",
   },
   {
-    slug: "lower-gates",
-    title: "Amberley Locks, Lower Gates",
-    year: 2023,
-    frames: [{ roll: 203, position: 7 }],
-    crop: whole,
-    alt: "The closed lower gates of a canal lock between brick walls, their long white-ended beams reaching out to both sides. A white thread of water leaks where the gates meet and spreads on the dark pool; bare trees stand in fog behind.",
-    statement:
-      "Two oak gates, nine tons each, and one leak that has been there since before I could walk. The lengthsman calls it the tap. I gave it six seconds.",
-    series: "low-water",
-  },
-  {
     slug: "saint-orrins-mill",
     title: "Saint Orrin's Mill",
     year: 2023,
@@ -552,17 +592,6 @@ export const prints: CataloguePrint[] = [
     alt: "A four-storey brick mill with a tall chimney stands across a wide pond, doubled by its reflection. Mist lies along the waterline; streaked cloud fans out behind, and reeds rise at the lower corner.",
     statement:
       "It stopped in the year my mother left it. I have no photograph of it working. This is how it looks from the place where the hands ate their lunch.",
-    series: "low-water",
-  },
-  {
-    slug: "two-hours-mill-pond",
-    title: "Two Hours, Mill Pond",
-    year: 2023,
-    frames: [{ roll: 203, position: 10 }],
-    crop: whole,
-    alt: "Night. Star trails draw arcs round a point high in a dark sky; a bare tree stands black against them at the left, and its shape lies broken in the pond below.",
-    statement:
-      "Two hours is a twelfth of a turn. The tree kept still and I did my best. The bright band low down is the town.",
     series: "low-water",
   },
   {
@@ -577,14 +606,14 @@ export const prints: CataloguePrint[] = [
     series: "under-leaf",
   },
   {
-    slug: "ferns-pell-wood",
-    title: "Ferns, Pell Wood",
+    slug: "ranks-pell-wood",
+    title: "Ranks, Pell Wood",
     year: 2023,
     frames: [{ roll: 203, position: 4 }],
     crop: whole,
-    alt: "Three pale fern fronds rise from the foot of the picture, the middle one upright and sharp to its tip, against a dark and out-of-focus wood.",
+    alt: "Upright beech trunks fill the picture from edge to edge with no ground to be seen, three of them black and near, the rest in paler and paler ranks behind, laced with fine bare twigs.",
     statement:
-      "Shield fern keeps its leaf all winter. I lay on a coat for this and had the coat cleaned afterwards.",
+      "A long lens presses a wood flat. I wanted the trunks as a row of greys, dark to light, and the wood had them in another order, so I left it as it was.",
     series: "under-leaf",
   },
   {
@@ -599,14 +628,14 @@ export const prints: CataloguePrint[] = [
     series: "under-leaf",
   },
   {
-    slug: "old-orchard-hoar-frost",
-    title: "Old Orchard, Hoar Frost",
+    slug: "old-orchard-thaw",
+    title: "Old Orchard, Thaw",
     year: 2023,
     frames: [{ roll: 203, position: 6 }],
     crop: whole,
-    alt: "Rows of old apple trees, every twig white with frost above short dark trunks, stand in frosted grass under a darker sky; the rows fade into mist behind.",
+    alt: "Old apple trees with wide dark crowns stand in rows on thin melting snow, bare grass showing between the rows; the trees behind fade into low mist.",
     statement:
-      "Nobody prunes it now, which is why it takes the frost so well. By half past nine it had all fallen, with a noise like someone sorting cutlery.",
+      "Nobody prunes it now. The snow goes first where the sheep walk, so for a morning you can see the plan of the place.",
     series: "under-leaf",
   },
   {
@@ -654,15 +683,62 @@ export const prints: CataloguePrint[] = [
     series: "high-chalk",
   },
   {
-    slug: "wall-and-snowfield",
-    title: "Wall and Snowfield",
+    slug: "fence-in-snow",
+    title: "Fence in Snow",
     year: 2024,
     frames: [{ roll: 214, position: 8 }],
     crop: whole,
-    alt: "A dry-stone wall climbs across an unmarked field of snow to a single round-headed tree on the brow, under a plain grey sky.",
+    alt: "A wire fence climbs across an unmarked field of snow to a single broad, bare tree on the brow, under a plain grey sky.",
     statement:
-      "Snow is the only time the wall is the darkest thing on the hill. I walked round the edge of the field, twice.",
+      "Snow leaves out most of a field. What is left here is nineteen posts and a tree. I walked round by the road so as not to add to it.",
     series: "high-chalk",
+  },
+];
+
+/** Written up, but no edition yet: pictures the studio may print next. */
+export const laterPrints: CataloguePrint[] = [
+  {
+    slug: "lower-gates",
+    title: "Amberley Locks, Lower Gates",
+    year: 2023,
+    frames: [{ roll: 203, position: 7 }],
+    crop: whole,
+    alt: "The closed lower gates of a canal lock between brick walls, their long white-ended beams reaching out to both sides. A white thread of water leaks where the gates meet and spreads on the dark pool; bare trees stand in fog behind.",
+    statement:
+      "Two oak gates, nine tons each, and one leak that has been there since before I could walk. The lengthsman calls it the tap. I gave it six seconds.",
+    series: "low-water",
+  },
+  {
+    slug: "two-hours-mill-pond",
+    title: "Two Hours, Mill Pond",
+    year: 2023,
+    frames: [{ roll: 203, position: 10 }],
+    crop: whole,
+    alt: "Night. Star trails draw arcs round a point high in a dark sky; a bare tree stands black against them at the left, and its shape lies broken in the pond below.",
+    statement:
+      "Two hours is a twelfth of a turn. The tree kept still and I did my best. The bright band low down is the town.",
+    series: "low-water",
+  },
+  {
+    slug: "milestone-thorn-lane",
+    title: "Milestone, Thorn Lane",
+    year: 2021,
+    frames: [{ roll: 187, position: 8 }],
+    crop: whole,
+    alt: "A lichened milestone cut with the figure nine in Roman letters stands in long grass, sharp against a soft grey lane and blurred winter trees.",
+    statement: "It does not say nine miles to where. Everyone who needed it knew.",
+    series: "under-leaf",
+  },
+  {
+    slug: "poplars-pinhole",
+    title: "Poplars, Pinhole",
+    year: 2023,
+    frames: [{ roll: 209, position: 4 }],
+    crop: whole,
+    alt: "Nine tall poplars on a dark bank, with a gap in the row, stand against a pale sky and are doubled, a little blurred, in the water below. The corners of the picture are dark.",
+    statement:
+      "A pinhole is everywhere equally unsharp. After a while it stops looking unsharp and looks like weather.",
+    series: "low-water",
   },
 ];
 
@@ -677,10 +753,10 @@ export const portfolios: CataloguePrint[] = [
       { roll: 187, position: 4 },
       { roll: 187, position: 6 },
       { roll: 187, position: 11 },
-      { roll: 203, position: 7 },
+      { roll: 203, position: 9 },
     ],
     crop: whole,
-    alt: "Five pictures of still water: a bridge and its reflection, a fence in a flood, reeds, a landing stage, and the gates of a lock.",
+    alt: "Five pictures of still water: a bridge and its reflection, a fence in a flood, reeds, a landing stage, and a mill across its pond.",
     statement:
       "The five I would keep. They are printed to one size so that they can be turned over like pages.",
     series: "low-water",

@@ -24,34 +24,32 @@ export class Plate {
     }
   }
 
-  /** As map, but fn(x, y) is evaluated on a coarse grid and interpolated; combine(old, value). */
-  wash(fn, combine, div = 4, y0 = 0, y1 = 1) {
-    const { w, h, px } = this,
-      s = 1 / h;
-    const a = Math.max(0, Math.floor(y0 * h)),
-      b = Math.min(h, Math.ceil(y1 * h));
-    const gw = Math.ceil(w / div) + 2,
-      gh = Math.ceil((b - a) / div) + 2;
+  /**
+   * Lays a slowly changing field over rows y0 to y1: fn(x, y) is evaluated on a grid of `div` pixels at 3000
+   * (wider on larger plates, so that the work does not grow with the file) and interpolated.
+   * mode: "set", "multiply", "add", "veil" (mix towards `tone`) or a function of (old, value).
+   */
+  wash(fn, mode, div = 4, y0 = 0, y1 = 1, tone = 0) {
+    const { w, h, px } = this;
+    const s = 1 / h;
+    const step = Math.max(1, Math.round((div * Math.max(w, h)) / 3000));
+    const a = Math.max(0, Math.floor(y0 * h));
+    const b = Math.min(h, Math.ceil(y1 * h));
+    if (b <= a) return;
+    const gw = Math.ceil(w / step) + 2;
+    const gh = Math.ceil((b - a) / step) + 2;
     const g = new Float32Array(gw * gh);
     for (let j = 0; j < gh; j++)
-      for (let i = 0; i < gw; i++) g[j * gw + i] = fn(i * div * s, (a + j * div) * s);
-    const inv = 1 / div;
+      for (let i = 0; i < gw; i++) g[j * gw + i] = fn(i * step * s, (a + j * step) * s);
+    const row = new Float32Array(w);
     for (let j = a; j < b; j++) {
-      const fy = (j - a) * inv,
-        jy = Math.floor(fy),
-        ty = fy - jy,
-        r0 = jy * gw,
-        r1 = r0 + gw;
-      for (let i = 0, k = j * w; i < w; i++, k++) {
-        const fx = i * inv,
-          ix = Math.floor(fx),
-          tx = fx - ix;
-        const p = g[r0 + ix],
-          q = g[r1 + ix];
-        const u = p + (g[r0 + ix + 1] - p) * tx,
-          v = q + (g[r1 + ix + 1] - q) * tx;
-        px[k] = combine(px[k], u + (v - u) * ty);
-      }
+      coarseRow(g, gw, step, j - a, row);
+      const k = j * w;
+      if (mode === "set") px.set(row, k);
+      else if (mode === "multiply") for (let i = 0; i < w; i++) px[k + i] *= row[i];
+      else if (mode === "add") for (let i = 0; i < w; i++) px[k + i] += row[i];
+      else if (mode === "veil") for (let i = 0; i < w; i++) px[k + i] += (tone - px[k + i]) * row[i];
+      else for (let i = 0; i < w; i++) px[k + i] = mode(px[k + i], row[i]);
     }
   }
 
@@ -315,51 +313,68 @@ export class Plate {
       body = 0.012,
       seed = 0,
       still = 0.02,
-      level = null,
+      cap = 1e9,
     } = {},
   ) {
-    const { w, h, px } = this,
-      n = tile("cloud"),
-      s = 1 / h,
-      j0 = Math.ceil(yw * h),
-      o = (seed % 97) / 97;
-    const src = px.slice(0, Math.min(px.length, (j0 + 1) * w)),
-      last = j0 - 1;
-    const rows = h - j0,
-      tmp = new Float32Array(rows * w);
-    for (let j = j0; j < h; j++) {
-      const d = (j + 0.5) * s - yw,
-        p = 1 / (d + still),
-        amp = ripple * clamp(d * 6 + 0.08) * h;
-      const fx = (0.22 * p * scale) / (1 + 0.06 * p * p * still),
-        vy = 0.16 * p * scale + o,
-        base = j0 - (j - j0) - 1;
-      for (let i = 0, q = (j - j0) * w; i < w; i++, q++) {
-        let f = base + n.at(((i + 0.5) * s - this.A / 2) * fx + o, vy) * amp;
-        f = f < 0 ? -f : f;
-        if (f > last - 1) f = last > 1 ? last - 1 : 0;
-        const r = f | 0,
-          a = src[r * w + i];
-        tmp[q] = a + (src[(r + 1) * w + i] - a) * (f - r);
+    const { w, h, px } = this;
+    const n = tile("cloud");
+    const s = 1 / h;
+    const j0 = Math.ceil(yw * h);
+    const o = (seed % 97) / 97;
+    const last = j0 - 1;
+    const rows = h - j0;
+    // by blocks of columns, so that a block and its running sums stay in the cache
+    const block = 128;
+    const tmp = new Float32Array(rows * block);
+    const sum = new Float32Array((rows + 1) * block);
+    const grid = 8;
+    for (let i0 = 0; i0 < w; i0 += block) {
+      const bw = Math.min(block, w - i0);
+      for (let j = j0; j < h; j++) {
+        const d = (j + 0.5) * s - yw;
+        const p = 1 / (d + still);
+        const amp = ripple * clamp(d * 6 + 0.08) * h;
+        const fx = (0.22 * p * scale) / (1 + 0.06 * p * p * still);
+        const vy = 0.16 * p * scale + o;
+        const base = last - (j - j0);
+        let shift = n.at(((i0 + 0.5) * s - this.A / 2) * fx + o, vy) * amp;
+        for (let i = 0, q = (j - j0) * block; i < bw; i += grid) {
+          const end = Math.min(grid, bw - i);
+          const next = n.at(((i0 + i + grid + 0.5) * s - this.A / 2) * fx + o, vy) * amp;
+          const slope = (next - shift) / grid;
+          for (let k = 0; k < end; k++, q++) {
+            let f = base + shift + slope * k;
+            f = f < 0 ? -f : f;
+            if (f > last - 1) f = last > 1 ? last - 1 : 0;
+            const r = f | 0;
+            const m = r * w + i0 + i + k;
+            let v = px[m];
+            v += (px[m + w] - v) * (f - r);
+            tmp[q] = Math.min(v, cap);
+          }
+          shift = next;
+        }
       }
-    }
-    // the image lengthens with distance from the bank: running sums give any window
-    for (let pass = 0; pass < 2; pass++) {
-      const sum = new Float32Array((rows + 1) * w);
-      for (let j = 0, q = 0; j < rows; j++) for (let i = 0; i < w; i++, q++) sum[q + w] = sum[q] + tmp[q];
+      // the image lengthens with distance from the bank: running sums give any window
+      for (let pass = 0; pass < 2; pass++) {
+        for (let j = 0, q = 0; j < rows; j++)
+          for (let i = 0; i < block; i++, q++) sum[q + block] = sum[q] + tmp[q];
+        for (let j = 0; j < rows; j++) {
+          const win = spread * j * 0.8 + 0.6;
+          const a = Math.max(0, Math.floor(j - win)) * block;
+          const b = Math.min(rows, Math.ceil(j + win) + 1) * block;
+          const inv = block / (b - a);
+          const q = j * block;
+          for (let i = 0; i < block; i++) tmp[q + i] = (sum[b + i] - sum[a + i]) * inv;
+        }
+      }
       for (let j = 0; j < rows; j++) {
-        const win = spread * j * 0.8 + 0.6,
-          a = Math.max(0, Math.floor(j - win)),
-          b = Math.min(rows, Math.ceil(j + win) + 1),
-          inv = 1 / (b - a);
-        for (let i = 0; i < w; i++) tmp[j * w + i] = (sum[b * w + i] - sum[a * w + i]) * inv;
+        const d = (j + 0.5) * s;
+        const k = dim + (deep - dim) * clamp(d * 1.6);
+        const q = j * block;
+        const m = (j0 + j) * w + i0;
+        for (let i = 0; i < bw; i++) px[m + i] = tmp[q + i] * k + body;
       }
-    }
-    for (let j = 0, q = 0; j < rows; j++) {
-      const d = (j + 0.5) * s,
-        k = dim + (deep - dim) * clamp(d * 1.6);
-      for (let i = 0; i < w; i++, q++)
-        if (!level || level((i + 0.5) * s, d)) px[j0 * w + q] = tmp[q] * k + body;
     }
   }
 
@@ -478,46 +493,40 @@ function boxV(px, w, h, r) {
   }
 }
 
-/** Mean over k x k blocks. */
+/** Mean over k x k blocks; the last row and column of blocks may be smaller. */
 export function shrink(px, w, h, k) {
-  const gw = Math.ceil(w / k),
-    gh = Math.ceil(h / k),
-    g = new Float32Array(gw * gh);
-  for (let J = 0; J < gh; J++)
-    for (let I = 0; I < gw; I++) {
-      let s = 0,
-        c = 0;
-      const je = Math.min(h, (J + 1) * k),
-        ie = Math.min(w, (I + 1) * k);
-      for (let j = J * k; j < je; j++)
-        for (let i = I * k; i < ie; i++) {
-          s += px[j * w + i];
-          c++;
-        }
-      g[J * gw + I] = s / c;
-    }
+  const gw = Math.ceil(w / k);
+  const gh = Math.ceil(h / k);
+  const g = new Float32Array(gw * gh);
+  for (let J = 0; J < gh; J++) {
+    const je = Math.min(h, (J + 1) * k);
+    for (let j = J * k; j < je; j++)
+      for (let I = 0, i = j * w, end = i; I < gw; I++) {
+        end = Math.min(end + k, j * w + w);
+        let sum = 0;
+        for (; i < end; i++) sum += px[i];
+        g[J * gw + I] += sum;
+      }
+    for (let I = 0; I < gw; I++) g[J * gw + I] /= (je - J * k) * (Math.min(w, (I + 1) * k) - I * k);
+  }
   return { g, gw, gh };
 }
 
-/** Visit every full-size pixel with the interpolated value of a shrunk field. */
-export function spread(g, gw, gh, k, w, h, fn) {
-  for (let j = 0; j < h; j++) {
-    const fy = clamp((j + 0.5) / k - 0.5, 0, gh - 1),
-      jy = Math.min(gh - 1, fy | 0),
-      ty = fy - jy,
-      r0 = jy * gw,
-      r1 = Math.min(gh - 1, jy + 1) * gw;
-    for (let i = 0, q = j * w; i < w; i++, q++) {
-      let fx = (i + 0.5) / k - 0.5;
-      fx = fx < 0 ? 0 : Math.min(fx, gw - 1);
-      const ix = fx | 0,
-        nx = ix + 1 < gw ? ix + 1 : ix,
-        tx = fx - ix;
-      const p = g[r0 + ix],
-        v = g[r1 + ix];
-      const a = p + (g[r0 + nx] - p) * tx,
-        b = v + (g[r1 + nx] - v) * tx;
-      fn(q, a + (b - a) * ty, i, j);
-    }
+/** One row of a coarse field, `step` pixels to a cell, interpolated to full width into `row`. */
+export function coarseRow(g, gw, step, j, row) {
+  const w = row.length;
+  const fy = j / step;
+  const jy = Math.floor(fy);
+  const ty = fy - jy;
+  const r0 = jy * gw;
+  const r1 = r0 + gw;
+  const inv = 1 / step;
+  let v = g[r0] + (g[r1] - g[r0]) * ty;
+  for (let i = 0, c = 1; i < w; c++) {
+    const next = g[r0 + c] + (g[r1 + c] - g[r0 + c]) * ty;
+    const slope = (next - v) * inv;
+    const end = Math.min(i + step, w);
+    for (let t = v; i < end; i++, t += slope) row[i] = t;
+    v = next;
   }
 }

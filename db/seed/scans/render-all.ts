@@ -69,6 +69,7 @@ export async function renderAll(
           width,
           height,
           format: roll.format,
+          lens: roll.lens,
         });
         await delivering;
         delivering = Promise.resolve(

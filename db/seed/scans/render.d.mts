@@ -6,13 +6,14 @@ export type SceneName =
   | "beech"
   | "bridge"
   | "drove"
-  | "fern"
   | "flood"
   | "furrows"
   | "lock"
+  | "milestone"
   | "mill"
   | "orchard"
   | "poplars"
+  | "ranks"
   | "reeds"
   | "ridges"
   | "snow"
@@ -28,6 +29,8 @@ export type RenderJob = {
   width: number;
   height: number;
   format: FilmFormat;
+  /** a pinhole is soft and falls off far more towards the corners; each scene has its own glass otherwise */
+  lens?: "pinhole";
 };
 
 export type RenderedScan = {

@@ -47,7 +47,8 @@ function ball(r) {
   }
 }
 
-const LUMPY = new Set(["round", "broad", "tall"]);
+/** How many lumps a crown is made of; crowns not named are filled evenly. */
+const LUMPS = { round: 9, broad: 9, tall: 9 };
 const cache = new Map();
 
 /** Returns { n, seg }: seg holds x0 y0 x1 y1 r0 r1 z per piece, thickest first, y upwards. */
@@ -92,9 +93,8 @@ export function growTree({
     near = [],
     nd = [];
   // lumps and gaps: no crown is a clean ellipsoid
-  const lumps = LUMPY.has(crown)
-    ? Array.from({ length: 9 }, () => [...CROWNS[crown](r), r.range(0.1, 0.21)])
-    : null;
+  const lumps =
+    LUMPS[crown] && Array.from({ length: LUMPS[crown] }, () => [...CROWNS[crown](r), r.range(0.1, 0.21)]);
   const inLump = (p) =>
     !lumps || lumps.some((l) => (p[0] - l[0]) ** 2 + (p[1] - l[1]) ** 2 + (p[2] - l[2]) ** 2 < l[3] * l[3]);
   for (let i = 0; i < points; i++) {
@@ -183,7 +183,7 @@ export function growTree({
     out = [];
   for (let i = 1; i < n; i++) {
     const p = P[i],
-      flare = (k) => 1 + 0.9 * Math.exp(-Y[k] / 0.022);
+      flare = (k) => 1 + 0.6 * Math.exp(-Y[k] / 0.03);
     // a child leaves a much thicker parent at its own thickness
     const rp = Math.min(rad(p), rad(i) * 1.25);
     out.push([X[p], Y[p], X[i], Y[i], rp * flare(p), rad(i) * flare(i), Z[i]]);
@@ -403,6 +403,39 @@ export function copse(
         }
     }
     x += s * gap * r.range(0.35, 1.7);
+  }
+}
+
+/** Far winter trees on a skyline: real crowns, unevenly spaced in clumps, over a low uneven hedge. */
+export function hanger(
+  p,
+  r,
+  base,
+  { from = 0, to = p.A, size = 0.03, gap = 0.5, tone = 0.1, alpha = 1, hedge = 0.3, thick = 1.25 },
+) {
+  const fn = typeof tone === "function";
+  if (hedge > 0)
+    copse(p, r, base, { from, to, size: size * hedge, vary: 0.45, gap: 0.4, tone, alpha: 0.9 * alpha });
+  for (let x = from; x < to; ) {
+    const s = size * (0.55 + 0.75 * r.next() ** 1.4);
+    const tree = growTree({
+      seed: 30 + r.int(0, 3),
+      crown: r.pick(["round", "broad", "tall"]),
+      points: 420,
+      trunk: 0.12,
+      step: 0.024,
+      kill: 0.044,
+      tip: 0.0015,
+      pipe: 2.25,
+      twigs: 3,
+      twigLen: 0.05,
+      wobble: 0.22,
+    });
+    const flip = r.chance(0.5);
+    if (x > -s && x < p.A + s)
+      drawTree(p, tree, x, base(x) + s * 0.03, s, { tone: fn ? tone(x) : tone, flip, alpha, thick });
+    // clumps and openings
+    x += s * gap * (r.chance(0.14) ? r.range(2.5, 7) : r.range(0.4, 1.3));
   }
 }
 

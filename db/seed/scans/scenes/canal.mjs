@@ -29,14 +29,12 @@ function masonry(seed, { course, unit, joint = 0.12, vary = 0.28, mortar = 1.5 }
 }
 
 export const bridge = {
-  title: "Amberley Locks, Bridge 11",
-  aspect: 1,
-  look: { format: "6x6", film: "iso125", ev: 0.1, contrast: 1.05, vignette: 0.26, glow: 0.1 },
+  look: { ev: 0.1, contrast: 1.05, vignette: 0.26, glow: 0.1 },
   paint(p, r) {
     const A = p.A,
-      yw = r.range(0.53, 0.56),
+      yw = r.range(0.558, 0.572),
       cx = A * r.range(0.48, 0.52),
-      R = r.range(0.3, 0.325),
+      R = r.range(0.322, 0.334),
       n = tile("soft"),
       c = tile("cloud"),
       px = 1 / p.h;
@@ -62,26 +60,35 @@ export const bridge = {
       y0: yw - 0.12,
       y1: yw + 0.01,
     });
-    p.poly(
-      [
-        [
-          [cx + 0.11, yw + 0.001],
-          [cx + 0.5, yw - 0.03],
-          [cx + 0.5, yw + 0.01],
-        ],
-      ],
-      0.12,
-    );
-    grassEdge(p, r, (x) => yw - 0.03 * smooth(cx + 0.11, cx + 0.5, x), {
-      from: cx + 0.12,
-      to: cx + 0.42,
-      n: 800,
-      len: 0.012,
-      tone: [0.05, 0.16],
-    });
+    // the towing path comes out of the mist along the right-hand bank
+    const path = (x) => yw + 0.001 - 0.026 * smooth(cx + 0.02, cx + 0.5, x) ** 1.3;
+    const pathTone = (x) => mix(0.85, 0.1, smooth(cx + 0.03, cx + 0.3, x));
+    const bank = [];
+    for (let k = 0; k <= 24; k++) bank.push([cx + 0.02 + 0.02 * k, path(cx + 0.02 + 0.02 * k)]);
+    p.poly([[...bank, [cx + 0.5, yw + 0.01], [cx + 0.02, yw + 0.01]]], (x) => pathTone(x));
+    for (let i = 0; i < 1500; i++) {
+      const x = cx + 0.04 + 0.4 * r.next();
+      const s = smooth(cx, cx + 0.35, x);
+      const y = path(x) + 0.012 * s * r.next();
+      const L = 0.011 * s * r.range(0.3, 1.2);
+      const a = -1.57 + r.gauss() * 0.35;
+      p.stroke(
+        x,
+        y,
+        x + Math.cos(a) * L,
+        y + Math.sin(a) * L,
+        0.00042 * s,
+        0.00015 * s,
+        pathTone(x) * r.range(0.5, 1.3),
+      );
+    }
     // trees standing behind the parapet
     const road = (x) =>
-      yw - R - 0.078 - 0.03 * Math.exp(-(((x - cx) / 0.32) ** 2)) + 0.05 * smooth(0.3, 0.9, Math.abs(x - cx));
+      yw -
+      R -
+      0.106 -
+      0.024 * Math.exp(-(((x - cx) / 0.32) ** 2)) +
+      0.02 * smooth(0.3, 0.9, Math.abs(x - cx));
     for (let i = 0; i < 4; i++) {
       const x = A * [0.03, 0.2, 0.86, 1.0][i] + r.gauss() * 0.02;
       drawTree(
@@ -187,12 +194,18 @@ export const bridge = {
         const x0 = cx + side * r.range(R + 0.12, A * 0.52),
           y0 = road(x0) + 0.01,
           L = r.range(0.05, 0.2);
-        for (let i = 0; i < 1900; i++) {
-          const v = r.next() ** 1.4,
-            x = x0 + r.gauss() * 0.03 * (1.1 - v),
-            y = y0 + v * L + r.gauss() * 0.012,
-            s = r.range(0.0009, 0.0024);
-          p.dab(x, y, s * r.range(0.6, 1), s, r.pick([0.008, 0.012, 0.018, 0.03, 0.075]), 0.9, 0.25);
+        // leaves lit from above: dark within and below, paler on the rounded outside
+        for (let i = 0; i < 3200; i++) {
+          const v = r.next() ** 1.4;
+          const q = r.gauss();
+          const x = x0 + q * 0.03 * (1.1 - v);
+          const y = y0 + v * L + r.gauss() * 0.012;
+          const s = r.range(0.0006, 0.0015);
+          const t =
+            r.pick([0.007, 0.01, 0.016, 0.026, 0.05]) *
+            (1.35 - v) *
+            (1 + 0.5 * clamp(c.at(x * 1.4, y * 1.4), -1, 1));
+          p.dab(x, y, s * r.range(0.6, 1.1), s, t, 0.9, 0.25);
         }
       }
     for (const s of [-1, 1])
@@ -225,9 +238,7 @@ export const bridge = {
 };
 
 export const lock = {
-  title: "Amberley Locks, Lower Gates",
-  aspect: 1.25,
-  look: { format: "6x7", film: "iso125", ev: 0.15, contrast: 1.05, vignette: 0.26, glow: 0.1 },
+  look: { ev: 0.15, contrast: 1.05, vignette: 0.26, glow: 0.1 },
   paint(p, r) {
     const A = p.A,
       yw = r.range(0.7, 0.73),
@@ -263,7 +274,7 @@ export const lock = {
     p.hill(bank, (x, y) => 0.14 * Math.exp(0.3 * f.at(x * 1.2, y * 2)));
     grassEdge(p, r, bank, { n: 3000, len: 0.014, tone: [0.06, 0.2], drop: 0.012 });
     // wing walls, turning outwards below the gates
-    const brick = masonry(r.int(1, 999), { course: 0.0165, unit: 0.05 }),
+    const brick = masonry(r.int(1, 999), { course: 0.0115, unit: 0.035, vary: 0.2, mortar: 1.3 }),
       block = masonry(r.int(1, 999), { course: 0.048, unit: 0.12, joint: 0.05, vary: 0.16 });
     const stain = (x, y) =>
       Math.exp(0.35 * c.at(x * 1.3, y * 0.12) + 0.3 * n.at(x * 0.3, y * 0.4)) *
@@ -338,6 +349,7 @@ export const lock = {
       0.02,
     );
     const gt = top + 0.012;
+    const post = limbLight(1, 0.35, 0.2);
     for (const s of [-1, 1]) {
       const X = (u) => cx + s * u,
         drop = 0.012;
@@ -369,15 +381,18 @@ export const lock = {
       ]) {
         const y0 = gt + v,
           y1 = y0 + drop;
-        p.line(
-          [
-            [X(W - 0.006), y0],
-            [X(0.004), y1],
-          ],
-          th,
-          th,
-          s > 0 ? 0.1 : 0.075,
-        );
+        const rail = [
+          [X(W - 0.006), y0 - th],
+          [X(0.004), y1 - th],
+          [X(0.004), y1 + th],
+          [X(W - 0.006), y0 + th],
+        ];
+        p.poly([rail], (x, y) => {
+          const across = (y - mix(y1, y0, Math.abs(x - cx) / W)) / th;
+          const worn = Math.exp(0.34 * f.at(x * 0.5 + v, y * 3.2) + 0.3 * c.at(x * 0.9 + s, y * 1.2));
+          const wet = mix(1, 0.5, smooth(yw - 0.17, yw - 0.04, y));
+          return (s > 0 ? 0.085 : 0.065) * worn * wet * (1 - 0.34 * across);
+        });
         p.line(
           [
             [X(W - 0.006), y0 + th * 1.05],
@@ -399,17 +414,19 @@ export const lock = {
           0.6,
         );
       }
+      // heel and mitre posts, rounded and streaked
       for (const u of [W - 0.014, 0.012])
-        p.line(
+        p.limb(
           [
-            [X(u), gt - (u > 0.1 ? 0.03 : 0.012)],
-            [X(u), yw + 0.01],
+            [X(u), yw + 0.01, 0.0125],
+            [X(u), gt - (u > 0.1 ? 0.03 : 0.012), 0.0125],
           ],
-          0.0125,
-          0.0125,
-          s > 0 ? 0.1 : 0.07,
-          1,
-          limbLight(1, 0.35, 0.2),
+          (k, x, y) =>
+            0.085 *
+            (s > 0 ? 1.15 : 0.85) *
+            post[((k + 1) * 16) | 0] *
+            Math.exp(0.36 * f.at(x * 2.6 + u, y * 0.28) + 0.32 * c.at(x * 1.5, y * 0.35 + u)) *
+            mix(1, 0.4, smooth(yw - 0.16, yw - 0.03, y)),
         );
       // balance beam, white at the end
       const by = gt - 0.042,
@@ -437,68 +454,45 @@ export const lock = {
           (white ? clamp(1 - 0.35 * smooth(0.4, 1.6, c.at(x * 1.5, y * 2 + o))) : 1)
         );
       });
-      p.line(
+      // hand rail and paddle gear
+      const iron = 0.0014;
+      for (const [u, rise] of [
+        [0.03, 0.052],
+        [0.115, 0.056],
+        [0.2, 0.06],
+      ])
+        p.stroke(X(u), by - rise, X(u), by, iron, iron, 0.03);
+      const handrail = [
+        [X(0.2), by - 0.06],
+        [X(0.03), by - 0.052],
+        [X(-0.03), by - 0.051],
+      ];
+      p.line(handrail, iron, iron, 0.035);
+      p.stroke(X(0.2), by - 0.0612, X(0.03), by - 0.0532, 0.0004, 0.0004, 0.3, 0.3, 0.6);
+      p.limb(
         [
-          [X(0.03), by - 0.05],
-          [X(0.03), by + 0.01],
+          [X(0.15), by + 0.008, 0.0075],
+          [X(0.15), by - 0.046, 0.0065],
         ],
-        0.0028,
-        0.0028,
-        0.03,
+        (k, x, y) => 0.03 * post[((k + 1) * 16) | 0] * Math.exp(0.4 * c.at(x * 2, y * 2)),
       );
-      p.line(
-        [
-          [X(0.2), by - 0.062],
-          [X(0.2), by + 0.0],
-        ],
-        0.0028,
-        0.0028,
-        0.03,
-      );
-      p.line(
-        [
-          [X(0.2), by - 0.062],
-          [X(0.03), by - 0.05],
-          [X(-0.03), by - 0.049],
-        ],
-        0.0022,
-        0.0022,
-        0.035,
-      );
-      // paddle gear
-      p.poly(
-        [
-          [
-            [X(0.105), by - 0.075],
-            [X(0.128), by - 0.075],
-            [X(0.13), by + 0.01],
-            [X(0.103), by + 0.01],
-          ],
-        ],
-        0.016,
-      );
-      p.dab(X(0.116), by - 0.05, 0.017, 0.017, 0.02, 1);
-      p.dab(X(0.116), by - 0.05, 0.007, 0.007, 0.2, 1);
+      p.stroke(X(0.15), by - 0.04, X(0.15), by - 0.075, 0.0016, 0.0016, 0.03);
+      p.stroke(X(0.142), by - 0.047, X(0.158), by - 0.047, 0.0022, 0.0022, 0.02);
     }
     // leaking water: a long exposure turns it to silk
-    for (let i = 0; i < 240; i++) {
-      const mid = r.chance(0.6),
-        x = mid
-          ? cx + r.gauss() * 0.0035
-          : cx + r.pick([-1, 1]) * r.pick([0.085, 0.16, W - 0.02]) + r.gauss() * 0.006,
-        y0 = mid ? gt + r.range(0.03, 0.1) : gt + r.range(0.09, 0.19),
-        sp = mid ? (x - cx) * 0.8 + r.gauss() * 0.004 : r.gauss() * 0.0015;
-      p.line(
-        [
-          [x, y0],
-          [x + sp * 0.3, mix(y0, yw, 0.5)],
-          [x + sp, yw + 0.004],
-        ],
-        0.0005,
-        r.range(0.0008, 0.003),
-        r.range(0.5, 1.1),
-        mid ? 0.13 : 0.1,
-      );
+    for (let i = 0; i < 420; i++) {
+      const mid = r.chance(0.7);
+      const x = mid
+        ? cx + r.gauss() * 0.0035
+        : cx + r.pick([-1, 1]) * r.pick([0.06, 0.085, 0.12, 0.16, 0.21, W - 0.03]) + r.gauss() * 0.005;
+      const y0 = mid ? gt + r.range(0.03, 0.14) : gt + r.range(0.13, 0.215);
+      const spill = mid ? (x - cx) * 0.9 + r.gauss() * 0.004 : r.gauss() * 0.0018;
+      const fall = [
+        [x, y0],
+        [x + spill * 0.3, mix(y0, yw, 0.5)],
+        [x + spill, yw + 0.004],
+      ];
+      p.line(fall, 0.0003, r.range(0.0006, 0.0026), r.range(0.5, 1.05), mid ? 0.075 : 0.055);
     }
     for (let i = 0; i < 90; i++)
       p.dab(
@@ -524,7 +518,7 @@ export const lock = {
     );
     mist(p, r, {
       tone: 0.85,
-      amount: (_x, y) => 0.35 * Math.exp(-(((y - yw - 0.01) / 0.02) ** 2)),
+      amount: (_x, y) => 0.2 * Math.exp(-(((y - yw - 0.016) / 0.034) ** 2)),
       y0: yw - 0.07,
       y1: yw + 0.1,
       rough: 0.7,
@@ -534,9 +528,7 @@ export const lock = {
 };
 
 export const mill = {
-  title: "Saint Orrin’s Mill",
-  aspect: 1.25,
-  look: { format: "6x7", film: "iso125", ev: 0.08, contrast: 1.16, vignette: 0.26, glow: 0.08 },
+  look: { ev: 0.08, contrast: 1.16, vignette: 0.26, glow: 0.08 },
   paint(p, r) {
     const A = p.A,
       yw = r.range(0.57, 0.6),
@@ -571,11 +563,16 @@ export const mill = {
     });
     const L = A * r.range(0.3, 0.36),
       g = yw + 0.002,
-      fogTone = 0.72,
-      fogAt = (y) => 0.1 + 0.32 * smooth(yw - 0.12, yw, y);
+      fogTone = 0.74,
+      fogAt = (y) => 0.13 + 0.4 * smooth(yw - 0.16, yw, y);
     const wall = (base, seed) => {
-      const b = masonry(seed, { course: 0.0058, unit: 0.017, vary: 0.2 });
-      return (x, y) => mix(base * b(x, y, px) * Math.exp(0.25 * c.at(x * 1.2, y * 0.3)), fogTone, fogAt(y));
+      const b = masonry(seed, { course: 0.0022, unit: 0.0062, vary: 0.16, mortar: 1.2 });
+      return (x, y) =>
+        mix(
+          base * b(x, y, px) * Math.exp(0.34 * c.at(x * 1.1, y * 0.28) + 0.2 * n.at(x * 0.9, y * 0.7)),
+          fogTone,
+          fogAt(y),
+        );
     };
     const box = (x0, y0, x1, y1, t) =>
       p.poly(
@@ -590,7 +587,7 @@ export const mill = {
         t,
       );
     // chimney, a little tapered with an oversailing cap
-    const chx = L + r.range(0.42, 0.46),
+    const chx = L + r.range(0.46, 0.49),
       cht = yw - r.range(0.43, 0.47);
     const stack = wall(0.05, 5);
     p.poly(
@@ -609,81 +606,139 @@ export const mill = {
     );
     box(chx - 0.021, cht - 0.004, chx + 0.021, cht + 0.006, 0.035);
     box(chx - 0.019, cht + 0.012, chx + 0.019, cht + 0.017, 0.07);
-    // main range: gable end to the light, long side in shade
-    const x0 = L - 0.06,
-      x1 = L + 0.36,
-      ev = yw - 0.235,
-      rd = 0.062;
-    const face = wall(0.055, 7),
-      gable = wall(0.12, 9);
-    p.poly(
-      [
-        [
-          [X(x0), ev],
-          [X(x0 + 0.012), ev - rd],
-          [X(x1 - 0.045), ev - rd],
-          [X(x1), ev],
-        ],
-      ],
-      (x, y) =>
-        mix(
-          0.085 * (1 + 0.15 * f.at(x * 2, y * 4)) * (((((y - ev) * 160) % 1) + 1) % 1 < 0.2 ? 0.75 : 1),
-          fogTone,
-          0.12,
-        ),
-    );
+    // the long front, seen square on: parapet, string courses, and a stair tower that stands forward
+    const x0 = L - 0.06;
+    const x1 = L + 0.45;
+    const ev = yw - 0.235;
+    const rd = 0.036;
+    const face = wall(0.06, 7);
+    const slates = (x, y) =>
+      mix(
+        0.075 * (1 + 0.2 * f.at(x * 2.2, y * 5)) * (((y - ev) * 330 + 900) % 1 < 0.25 ? 0.8 : 1),
+        fogTone,
+        0.13,
+      );
+    const roof = [
+      [X(x0 - 0.003), ev],
+      [X(x0 + 0.03), ev - rd],
+      [X(x1 - 0.03), ev - rd],
+      [X(x1 + 0.003), ev],
+    ];
+    p.poly([roof], slates);
+    p.stroke(X(x0 + 0.03), ev - rd, X(x1 - 0.03), ev - rd, 0.0012, 0.0012, 0.05);
+    for (let k = 0; k < 3; k++) {
+      const vent = x0 + 0.11 + k * 0.13;
+      box(vent, ev - rd - 0.009, vent + 0.014, ev - rd + 0.002, 0.06);
+      box(vent - 0.001, ev - rd - 0.011, vent + 0.015, ev - rd - 0.009, 0.1);
+    }
     box(x0, ev, x1, g, face);
+    box(x0 - 0.003, ev - 0.003, x1 + 0.003, ev + 0.002, mix(0.12, fogTone, 0.14));
+    for (let fl = 0; fl < 4; fl++) {
+      const y = ev + 0.0145 + fl * 0.053;
+      p.stroke(X(x0), y, X(x1), y, 0.0007, 0.0007, mix(0.1, fogTone, fogAt(y)), undefined, 0.6);
+    }
+    const sash = (wx, wy, w, hgt) => {
+      const air = fogAt(wy) * 0.9;
+      box(wx - 0.0012, wy - 0.0026, wx + w + 0.0012, wy, mix(0.1, fogTone, air));
+      box(wx, wy, wx + w, wy + hgt, mix(0.011, fogTone, air));
+      // panes catch a little sky, each at its own angle; some are boarded or gone
+      const cols = 4;
+      const rows = 6;
+      const kind = r.next();
+      for (let a = 0; a < cols; a++)
+        for (let b = 0; b < rows; b++) {
+          const t =
+            kind < 0.06 ? 0.05 : r.chance(0.1) ? 0.006 : 0.012 + 0.05 * r.next() ** 3 + 0.03 * (b / rows);
+          const pane = mix(t, fogTone, air);
+          box(
+            wx + (a + 0.12) * (w / cols),
+            wy + (b + 0.1) * (hgt / rows),
+            wx + (a + 0.9) * (w / cols),
+            wy + (b + 0.92) * (hgt / rows),
+            pane,
+          );
+        }
+      // shadow of the lintel, pale sill, and what has run down from it
+      p.stroke(
+        X(wx),
+        wy + 0.0012,
+        X(wx + w),
+        wy + 0.0012,
+        0.0012,
+        0.0012,
+        mix(0.006, fogTone, air),
+        undefined,
+        0.9,
+      );
+      box(wx - 0.0014, wy + hgt, wx + w + 0.0014, wy + hgt + 0.0018, mix(0.17, fogTone, air));
+      for (let k = 0; k < 3; k++) {
+        const q = wx + w * r.next();
+        const run = hgt * r.range(0.2, 0.7);
+        p.stroke(
+          X(q),
+          wy + hgt + 0.002,
+          X(q),
+          wy + hgt + run,
+          0.0008,
+          0.0003,
+          mix(0.03, fogTone, air),
+          undefined,
+          0.35,
+        );
+      }
+    };
+    const tower = x0 + 0.3;
+    for (let fl = 0; fl < 4; fl++)
+      for (let k = 0; k < 14; k++) {
+        const wx = x0 + 0.016 + k * 0.0348;
+        const wy = ev + 0.02 + fl * 0.053;
+        if (wy > g - 0.03 || (wx + 0.015 > tower - 0.003 && wx < tower + 0.07)) continue;
+        sash(wx, wy, 0.0145, 0.027);
+      }
+    for (const q of [x0 + 0.0125, tower - 0.006, x1 - 0.006])
+      p.stroke(
+        X(q),
+        ev + 0.004,
+        X(q),
+        g,
+        0.0008,
+        0.0008,
+        mix(0.02, fogTone, 0.2),
+        mix(0.02, fogTone, 0.5),
+        0.9,
+      );
+    // tower: a floor higher than the rest, its shadow to the left of it
+    const tt = ev - 0.07;
     p.poly(
       [
         [
-          [X(x1), ev],
-          [X(x1 + 0.045), ev - rd],
-          [X(x1 + 0.09), ev],
-          [X(x1 + 0.09), g],
-          [X(x1), g],
+          [X(tower - 0.014), ev + 0.004],
+          [X(tower), ev + 0.004],
+          [X(tower), g],
+          [X(tower - 0.014), g],
         ],
       ],
-      gable,
+      (_x, y, old) => old * mix(0.55, 0.9, smooth(yw - 0.14, yw, y)),
     );
+    box(tower, tt, tower + 0.066, g, wall(0.095, 9));
+    box(tower - 0.003, tt - 0.004, tower + 0.069, tt + 0.002, mix(0.15, fogTone, 0.12));
     p.poly(
       [
         [
-          [X(x1 - 0.047), ev - rd - 0.002],
-          [X(x1 + 0.045), ev - rd - 0.002],
-          [X(x1 + 0.002), ev + 0.004],
-          [X(x1 - 0.004), ev + 0.002],
+          [X(tower - 0.002), tt - 0.004],
+          [X(tower + 0.033), tt - 0.042],
+          [X(tower + 0.068), tt - 0.004],
         ],
       ],
-      0.1,
+      (x, y) => slates(x, y) * (x * (flip ? -1 : 1) > X(tower + 0.033) * (flip ? -1 : 1) ? 1.2 : 0.8),
     );
-    p.line(
-      [
-        [X(x0), ev],
-        [X(x1), ev],
-      ],
-      0.0018,
-      0.0018,
-      0.012,
-      0.8,
-    );
-    for (let fl = 0; fl < 4; fl++)
-      for (let k = 0; k < 11; k++) {
-        const wx = x0 + 0.022 + k * 0.0362,
-          wy = ev + 0.02 + fl * 0.053;
-        if (wy > g - 0.03) continue;
-        box(wx, wy, wx + 0.015, wy + 0.027, mix(r.chance(0.1) ? 0.3 : 0.012, fogTone, fogAt(wy) * 0.8));
-        box(wx - 0.0015, wy + 0.027, wx + 0.0165, wy + 0.0298, mix(0.16, fogTone, fogAt(wy)));
-        for (const q of [0.005, 0.01])
-          p.stroke(X(wx + q), wy, X(wx + q), wy + 0.027, 0.0005, 0.0005, 0.12, 0.12, 0.7);
-        p.stroke(X(wx), wy + 0.013, X(wx + 0.015), wy + 0.013, 0.0005, 0.0005, 0.12, 0.12, 0.7);
-      }
-    for (let fl = 0; fl < 4; fl++)
-      for (let k = 0; k < 2; k++) {
-        const wx = x1 + 0.02 + k * 0.035,
-          wy = ev + 0.02 + fl * 0.053;
-        if (wy < g - 0.03) box(wx, wy, wx + 0.013, wy + 0.027, mix(0.02, fogTone, fogAt(wy)));
-      }
-    box(x1 + 0.036, ev - 0.035, x1 + 0.054, ev - 0.012, 0.02);
+    p.stroke(X(tower + 0.033), tt - 0.041, X(tower + 0.033), tt - 0.064, 0.0007, 0.0004, 0.05);
+    for (let fl = 0; fl < 5; fl++) {
+      const wy = tt + 0.018 + fl * 0.057;
+      if (wy > g - 0.035) continue;
+      sash(tower + 0.012, wy, 0.0125, 0.026);
+      sash(tower + 0.041, wy, 0.0125, 0.026);
+    }
     // hoist, lean-to, sheds with north lights
     const sw = 0.052,
       sx = x0 - 0.17,
@@ -701,20 +756,15 @@ export const mill = {
         ],
         wall(0.075, 11 + k),
       );
-    box(x1 + 0.09, yw - 0.1, x1 + 0.2, g, wall(0.07, 17));
-    p.poly(
-      [
-        [
-          [X(x1 + 0.09), yw - 0.128],
-          [X(x1 + 0.205), yw - 0.098],
-          [X(x1 + 0.205), yw - 0.094],
-          [X(x1 + 0.09), yw - 0.1],
-        ],
-      ],
-      0.16,
-    );
-    for (let k = 0; k < 3; k++)
-      box(x1 + 0.105 + k * 0.032, yw - 0.078, x1 + 0.12 + k * 0.032, yw - 0.05, 0.06);
+    box(x1, yw - 0.1, x1 + 0.11, g, wall(0.07, 17));
+    const lean = [
+      [X(x1), yw - 0.128],
+      [X(x1 + 0.115), yw - 0.098],
+      [X(x1 + 0.115), yw - 0.094],
+      [X(x1), yw - 0.1],
+    ];
+    p.poly([lean], (x, y) => mix(0.1 * (1 + 0.2 * f.at(x * 2, y * 4)), fogTone, 0.2));
+    for (let k = 0; k < 3; k++) sash(x1 + 0.014 + k * 0.032, yw - 0.078, 0.014, 0.026);
     // trees at the tail of the island
     drawTree(
       p,
@@ -773,7 +823,7 @@ export const mill = {
     p.wash(
       (x, y) =>
         1 - 0.16 * smooth(0.9, 1.8, c.at(x * 0.06 + o, 0.16 / (y - yw + 0.05))) * smooth(0.02, 0.12, y - yw),
-      (a, b) => a * b,
+      "multiply",
       3,
       yw,
       1,

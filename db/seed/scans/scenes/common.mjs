@@ -16,7 +16,7 @@ export function sky(
       const c = 1 + cloud * (n.at(x * 0.16 + o, y * 0.4 + q) + 0.5 * n.at(x * 0.4 + q, y * 1.1 + o));
       return (mix(top, low, smooth(0, at, y)) + glow * Math.exp(-d * d)) * c;
     },
-    (_a, b) => b,
+    "set",
     8,
     0,
     to,
@@ -53,9 +53,10 @@ export function streaks(
         n.at(u * freq * 0.2 + o + w, v * along + q) * 0.75 +
         0.55 * s.at(u * freq * 0.06 + q, v * along * 0.6 + o) +
         bias;
-      return c * smooth(0, 0.22, yh - y + lift * 0.25);
+      const k = c * smooth(0, 0.22, yh - y + lift * 0.25) * strength;
+      return k > 0 ? 1 + k : 1 / (1 - k * dark * 2);
     },
-    (a, c) => a * (c > 0 ? 1 + c * strength : 1 / (1 - c * strength * dark * 2)),
+    "multiply",
     4,
     0,
     to,
@@ -84,9 +85,9 @@ export function clouds(
         c = den(u, v);
       const body = smooth(-0.3, 1.5, c),
         lit = clamp(0.5 + (c - den(u + lx * 0.22, v - 0.14)) * 0.55);
-      return body * mix(-dark, light, lit);
+      return 1 + body * mix(-dark, light, lit);
     },
-    (a, c) => a * (1 + c),
+    "multiply",
     3,
     0,
     to,
@@ -112,10 +113,11 @@ export function mist(p, r, { tone, amount, rough = 0.25, y0 = 0, y1 = 1, scale =
                     0.4 * c.at(x * 0.25 * scale + q, y * scale + o))),
           );
     },
-    (v, a) => v + (tone - v) * a,
+    "veil",
     4,
     y0,
     y1,
+    tone,
   );
 }
 

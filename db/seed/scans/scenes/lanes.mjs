@@ -1,13 +1,11 @@
 // Roads, lamps, stones.
 import { clamp, mix, smooth, tile } from "../noise.mjs";
 import { blur } from "../plate.mjs";
-import { drawTree, grassEdge, growTree, limbLight, treeLine } from "../trees.mjs";
+import { drawTree, grassEdge, growTree, treeLine } from "../trees.mjs";
 import { groundNoise, mist, sky } from "./common.mjs";
 
 export const drove = {
-  title: "The Drove, January",
-  aspect: 0.8,
-  look: { format: "6x7", film: "iso125", ev: 0.1, vignette: 0.26, glow: 0.12 },
+  look: { ev: 0.1, vignette: 0.26, glow: 0.12 },
   paint(p, r) {
     const A = p.A,
       yh = r.range(0.56, 0.6),
@@ -77,40 +75,25 @@ export const drove = {
         });
       }
       for (const side of [-1, 1]) {
-        const N = z < 1.6 ? 70 : 46;
+        const N = z < 1.6 ? 64 : 44;
         for (let i = 0; i < N; i++) {
-          const X = side * (1.28 + Math.abs(r.gauss()) * 0.2),
-            [x, y] = at(X, z),
-            h = 0.3 * s * r.range(0.35, 1.05) * (1 + 0.2 * c.at(z * 0.5, side + o)),
-            a = -1.57 + r.gauss() * 0.55;
-          const t = mix(fog, r.pick([0.006, 0.012, 0.03, 0.07]), e ** 0.65),
-            b = a + r.gauss() * 0.5;
-          p.stroke(
-            x,
-            y,
-            x + Math.cos(a) * h * 0.6,
-            y + Math.sin(a) * h * 0.6,
-            0.0016 * s,
-            0.001 * s,
-            t,
-            t,
-            0.85,
-          );
-          p.stroke(
-            x + Math.cos(a) * h * 0.6,
-            y + Math.sin(a) * h * 0.6,
-            x + Math.cos(a) * h * 0.6 + Math.cos(b) * h * 0.4,
-            y + Math.sin(a) * h * 0.6 + Math.sin(b) * h * 0.4,
-            0.0009 * s,
-            0.0003 * s,
-            t,
-            t,
-            0.85,
-          );
+          const X = side * (1.3 + Math.abs(r.gauss()) * 0.2);
+          const [x, y] = at(X, z);
+          const h = 0.2 * s * r.range(0.3, 1.05) * (1 + 0.25 * c.at(z * 0.5, side + o));
+          const a = -1.57 + r.gauss() * 0.4;
+          const t = mix(fog, r.pick([0.006, 0.012, 0.03, 0.06]), e ** 0.65);
+          const mx = x + Math.cos(a) * h * 0.5;
+          const my = y + Math.sin(a) * h * 0.5;
+          p.stroke(x, y, mx, my, 0.0014 * s, 0.0009 * s, t, t, 0.85);
+          for (let k = 0; k < 3; k++) {
+            const b = a + r.gauss() * 0.65;
+            const L = h * r.range(0.2, 0.5);
+            p.stroke(mx, my, mx + Math.cos(b) * L, my + Math.sin(b) * L, 0.0007 * s, 0.0002 * s, t, t, 0.85);
+          }
         }
         for (let i = 0; i < 5; i++) {
-          const [x, y] = at(side * (1.4 + Math.abs(r.gauss()) * 0.25), z),
-            v = r.range(0.05, 0.22);
+          const [x, y] = at(side * (1.42 + Math.abs(r.gauss()) * 0.25), z),
+            v = r.range(0.03, 0.15);
           p.dab(x, y - v * s, 0.05 * s, 0.04 * s, mix(fog, 0.025, e ** 0.8), 0.4, 0.9);
         }
         for (let i = 0; i < 60; i++) {
@@ -131,265 +114,8 @@ export const drove = {
   },
 };
 
-export const lamp = {
-  title: "Thorn Lane, Rain",
-  aspect: 0.8,
-  look: { format: "6x7", film: "iso400", ev: 0.3, contrast: 1.0, vignette: 0.3, glow: 0.16, grain: 1.15 },
-  paint(p, r) {
-    const A = p.A,
-      yh = 0.6,
-      side = r.pick([-1, 1]),
-      lx = A * (0.5 + side * r.range(0.07, 0.13)),
-      ly = r.range(0.25, 0.3),
-      vx = A * (0.5 - side * 0.07),
-      n = tile("soft"),
-      c = tile("cloud"),
-      f = tile("fine"),
-      o = r.next();
-    const near = (x, y, q) => 1 / (1 + ((x - lx) ** 2 + (y - ly) ** 2) / (q * q));
-    p.wash(
-      (x, y) =>
-        0.022 +
-        0.05 * smooth(0.1, yh, y) +
-        0.34 * near(x, y, 0.075) * (1 + 0.18 * n.at(x * 0.4 + o, y * 0.4)) +
-        0.055 * near(x, y, 0.3),
-      (_a, b) => b,
-      4,
-    );
-    // far trees catch a little of it
-    treeLine(p, r, () => yh, { size: 0.16, tone: 0.035, fill: 0.4, gap: 0.3, full: true });
-    mist(p, r, {
-      tone: 0.12,
-      amount: (x, y) => 0.6 * smooth(yh - 0.16, yh, y) * near(x, y, 0.45),
-      y1: yh + 0.01,
-    });
-    const tree = growTree({
-      seed: 160 + r.int(0, 2),
-      crown: "broad",
-      points: 1100,
-      trunk: 0.24,
-      kill: 0.036,
-      tip: 0.0009,
-      twigs: 3.2,
-      pipe: 2.15,
-    });
-    const bx = lx - side * 0.36;
-    drawTree(p, tree, bx, 0.66, 0.56, {
-      tone: (h, z) => 0.006 + 0.02 * h * Math.max(0, 0.3 + z),
-      flip: side > 0,
-    });
-    // cottage gable with a lit pane
-    const gx = lx + side * 0.15,
-      w = 0.13,
-      wall = (x, y) => 0.03 * (1 + 0.3 * c.at(x, y)) * (0.4 + 3 * near(x, y, 0.16)),
-      G = (u) => gx + side * u;
-    p.poly(
-      [
-        [
-          [G(-0.01), 0.45],
-          [G(w * 0.55), 0.345],
-          [G(w * 1.1), 0.45],
-          [G(0.5), 0.45],
-          [G(0.5), 0.66],
-          [G(-0.01), 0.66],
-        ],
-      ],
-      wall,
-    );
-    p.poly(
-      [
-        [
-          [G(w * 0.52), 0.338],
-          [G(0.5), 0.338],
-          [G(0.5), 0.455],
-          [G(w * 1.13), 0.455],
-        ],
-      ],
-      (x, y) => 0.016 * (1 + 0.25 * f.at(x * 3, y * 6)),
-    );
-    p.poly(
-      [
-        [
-          [G(w * 0.86), 0.3],
-          [G(w * 1.1), 0.3],
-          [G(w * 1.1), 0.36],
-          [G(w * 0.86), 0.36],
-        ],
-      ],
-      (x, y) => 0.02 + 0.05 * near(x, y, 0.16),
-    );
-    p.line(
-      [
-        [G(-0.022), 0.46],
-        [G(w * 0.55), 0.34],
-        [G(w * 1.12), 0.455],
-      ],
-      0.004,
-      0.004,
-      0.04,
-    );
-    const wx = G(w * 0.55);
-    p.poly(
-      [
-        [
-          [wx - 0.018, 0.5],
-          [wx + 0.018, 0.5],
-          [wx + 0.018, 0.555],
-          [wx - 0.018, 0.555],
-        ],
-      ],
-      0.5,
-    );
-    for (const q of [-0.006, 0.006]) p.stroke(wx + q, 0.5, wx + q, 0.555, 0.001, 0.001, 0.03);
-    p.stroke(wx - 0.018, 0.525, wx + 0.018, 0.525, 0.001, 0.001, 0.03);
-    // hedge banks and verges
-    p.hill(
-      (x) => yh + 0.006 + 0.42 * clamp(Math.abs(x - vx) - 0.02) ** 1.25 - 0.006,
-      (x, y) => (0.006 + 0.05 * near(x, y, 0.15)) * Math.exp(0.5 * f.at(x * 1.4, y * 2.2)),
-    );
-    for (let i = 0; i < 9000; i++) {
-      const q = r.next(),
-        s = r.pick([-1, 1]),
-        x = vx + s * (0.02 + 0.8 * q),
-        b0 = yh + 0.006 + 0.42 * Math.max(0, Math.abs(x - vx) - 0.02) ** 1.25,
-        y = mix(b0, yh + 0.02 + 0.85 * Math.abs(x - vx), r.next()),
-        L = (0.004 + 0.03 * q) * r.range(0.4, 1.2),
-        a = -1.57 + r.gauss() * 0.6,
-        v = 0.003 + 0.2 * r.next() ** 2.5 * near(x, y, 0.16);
-      p.stroke(x, y, x + Math.cos(a) * L, y + Math.sin(a) * L, 0.0004 + q * 0.0008, 0.0002, v, v * 1.3, 0.85);
-    }
-    p.hill(
-      (x) => {
-        const t = clamp((Math.abs(x - vx) - 0.06) / 0.75),
-          b = yh + 0.012 + 0.42 * clamp(Math.abs(x - vx) - 0.05) ** 1.25;
-        return t <= 0
-          ? b
-          : b -
-              0.7 * (0.02 + 0.2 * t) * smooth(0, 0.02, t) +
-              0.006 * c.at(x * 0.8, o) +
-              0.003 * f.at(x * 1.3, o);
-      },
-      (x, y, _d, old) =>
-        y > yh + 0.3 ? old : (0.004 + 0.05 * near(x, y, 0.13)) * Math.exp(0.5 * f.at(x * 1.6, y * 1.6)),
-    );
-    for (const s of [-1, 1]) {
-      const base = (x) => yh + 0.012 + 0.42 * clamp(Math.abs(x - vx) - 0.05) ** 1.25;
-      for (let i = 0; i < 5200; i++) {
-        const t = r.next() ** 0.8,
-          x = vx + s * (0.06 + t * 0.75),
-          y = base(x) - r.next() * (0.02 + 0.2 * t),
-          a = -1.57 + r.gauss() * 0.7,
-          L = (0.006 + 0.04 * t) * r.range(0.4, 1),
-          v = (0.004 + 0.1 * r.next() * near(x, y, 0.14)) * (1 + 2 * near(x, y, 0.06));
-        if (s === side && t > 0.16 && y < 0.62) continue;
-        p.stroke(x, y, x + Math.cos(a) * L, y + Math.sin(a) * L, 0.0008 + t * 0.0011, 0.0004, v, v, 0.9);
-      }
-    }
-    // wet lane: a mirror broken into long strokes
-    p.hill(
-      (x) => yh + 0.01 + 0.004 * c.at(x * 0.9, o) + 0.85 * Math.max(0, Math.abs(x - vx) - 0.016),
-      (x, y) => {
-        const d = y - yh,
-          z = 0.3 / d,
-          X = (x - vx) * z,
-          u = (x - lx) / (0.018 + 0.1 * d),
-          tex = f.at(X * 0.3, z * 0.32 + o),
-          rut = c.at(X * 0.22, z * 0.05 + o);
-        const wob = 0.5 * c.at(X * 0.15 + o, z * 1.1),
-          col = Math.exp(-((u + wob) ** 2)) * (0.75 + 0.6 * tex + 0.3 * rut);
-        const broad = Math.exp(-(((x - lx) / (0.12 + 0.34 * d)) ** 2));
-        return (
-          0.013 * (1 + 0.3 * tex) +
-          Math.max(0, col) * 1.15 * Math.exp(-d * 1.1) +
-          broad * 0.16 * Math.max(0.08, 0.4 + 0.42 * rut + 0.35 * tex) * Math.exp(-d * 1.2)
-        );
-      },
-    );
-    for (const s of [-1, 1])
-      for (let i = 0; i < 1800; i++) {
-        const d = 0.02 + 0.42 * r.next() ** 1.3,
-          x = vx + s * (0.016 + d / 0.85 + Math.abs(r.gauss()) * 0.05 * d * 4),
-          y = yh + 0.015 + d,
-          L = 0.06 * (0.12 + d) * r.range(0.4, 1.2),
-          a = -1.57 + r.gauss() * 0.5 - s * 0.3,
-          v = 0.005 + 0.2 * r.next() ** 2 * near(x, y, 0.22);
-        p.stroke(x, y, x + Math.cos(a) * L, y + Math.sin(a) * L, 0.0008 + d * 0.0016, 0.0003, v, v, 0.9);
-      }
-    // lamp
-    const foot = yh + 0.09;
-    p.line(
-      [
-        [lx, foot],
-        [lx, ly + 0.03],
-      ],
-      0.0048,
-      0.0034,
-      0.03,
-      1,
-      limbLight(side, 0.3, 0.4),
-    );
-    p.dab(lx, foot, 0.012, 0.005, 0.01, 1);
-    p.stroke(lx, foot, lx, foot - 0.06, 0.0085, 0.006, 0.02);
-    p.line(
-      [
-        [lx - 0.02, ly + 0.055],
-        [lx + 0.02, ly + 0.055],
-      ],
-      0.0018,
-      0.0018,
-      0.03,
-    );
-    p.poly(
-      [
-        [
-          [lx - 0.017, ly - 0.018],
-          [lx + 0.017, ly - 0.018],
-          [lx + 0.011, ly + 0.026],
-          [lx - 0.011, ly + 0.026],
-        ],
-      ],
-      7,
-    );
-    for (const q of [-1, 0, 1])
-      p.stroke(lx + q * 0.017, ly - 0.018, lx + q * 0.011, ly + 0.026, 0.0011, 0.0011, 0.02);
-    p.poly(
-      [
-        [
-          [lx - 0.023, ly - 0.018],
-          [lx + 0.023, ly - 0.018],
-          [lx + 0.008, ly - 0.038],
-          [lx - 0.008, ly - 0.038],
-        ],
-      ],
-      0.02,
-    );
-    p.dab(lx, ly - 0.041, 0.005, 0.006, 0.02);
-    p.stroke(lx - 0.012, ly + 0.027, lx + 0.012, ly + 0.027, 0.003, 0.003, 0.02);
-    // rain, seen only where the light finds it
-    for (let i = 0; i < 2600; i++) {
-      const q = r.chance(0.6),
-        x = q ? lx + r.gauss() * 0.2 : r.range(0, A),
-        y = q ? ly + r.gauss() * 0.24 : r.range(-0.05, 0.95),
-        L = r.range(0.02, 0.06),
-        v = near(x, y, 0.11);
-      if (v < 0.02) continue;
-      p.stroke(x, y, x - 0.09 * L, y + L, 0.00035, 0.00035, 0.08 + 1.3 * v, undefined, 0.2 + 0.3 * v);
-    }
-    for (let i = 0; i < 360; i++) {
-      const d = 0.04 + 0.36 * r.next(),
-        x = vx + r.range(-1, 1) * d * 0.9,
-        y = yh + d,
-        s = 0.004 * d * 6;
-      const v = near(x, y, 0.4);
-      p.dab(x, y, s * 1.4, s * 0.3, 0.5 * v, 0.3, 0.6);
-    }
-  },
-};
-
 export const milestone = {
-  title: "Milestone, Thorn Lane",
-  aspect: 1,
-  look: { format: "6x6", film: "iso125", ev: 0.1, contrast: 1.05, vignette: 0.3, glow: 0.08, lens: "simple" },
+  look: { ev: 0.1, contrast: 1.05, vignette: 0.3, glow: 0.08, lens: "simple" },
   paint(p, r) {
     const A = p.A,
       c = tile("cloud"),
@@ -418,7 +144,7 @@ export const milestone = {
           lane = Math.exp(-((X / 0.55) ** 4));
         return mix(0.8, mix(0.085, 0.3, lane) * Math.exp(0.25 * c.at(X * 0.2, z * 0.1 + o)), e ** 0.6);
       },
-      (_old, v) => v,
+      "set",
       3,
       yh + 0.015,
     );

@@ -5,9 +5,7 @@ import { drawTree, grassEdge, growTree, limbLight, treeLine } from "../trees.mjs
 import { mist, sky, streaks } from "./common.mjs";
 
 export const flood = {
-  title: "Flood, Lower Meadow",
-  aspect: 1,
-  look: { format: "6x6", film: "iso125", ev: 0.12, contrast: 1.14, vignette: 0.34 },
+  look: { ev: 0.12, contrast: 1.14, vignette: 0.34 },
   paint(p, r) {
     const yw = r.range(0.36, 0.42),
       A = p.A,
@@ -37,7 +35,7 @@ export const flood = {
           0.035 * c.at((x - 0.5) * z * 0.02, z * 0.12 + o)
         );
       },
-      (a, b) => a * b,
+      "multiply",
       4,
       yw,
       1,
@@ -122,19 +120,13 @@ export const flood = {
 };
 
 export const reeds = {
-  title: "Reed Bed, No Wind",
-  aspect: 1,
-  look: { format: "6x6", film: "iso50", ev: 0.1, contrast: 1.2, vignette: 0.28, glow: 0.05 },
+  look: { ev: 0.1, contrast: 1.2, vignette: 0.28, glow: 0.05 },
   paint(p, r) {
     const n = tile("soft"),
       c = tile("cloud"),
       o = r.next(),
       A = p.A;
-    p.wash(
-      (x, y) => mix(1.05, 0.4, smooth(0, 1.05, y)) * (1 + 0.07 * n.at(x * 0.2 + o, y * 0.3)),
-      (_a, b) => b,
-      8,
-    );
+    p.wash((x, y) => mix(1.05, 0.4, smooth(0, 1.05, y)) * (1 + 0.07 * n.at(x * 0.2 + o, y * 0.3)), "set", 8);
     const stems = [],
       clusters = Array.from({ length: 7 }, () => [r.range(-0.05, 1.05) * A, r.range(0.02, 0.09)]);
     for (let i = 0; i < 92; i++) {
@@ -195,11 +187,7 @@ export const reeds = {
         }
       p.line(ref, s.w * s.s, s.w * s.s * 0.8, tone * 1.25 + 0.03, 0.78);
     }
-    p.wash(
-      (x, y) => 1 + 0.012 * c.at(x * 0.3, y * 1.3 + o),
-      (a, b) => a * b,
-      4,
-    );
+    p.wash((x, y) => 1 + 0.012 * c.at(x * 0.3, y * 1.3 + o), "multiply", 4);
     blur(p.px, p.w, p.h, p.h * 0.0005, p.h * 0.0011);
     for (const s of stems) {
       const tone = mix(0.3, 0.012, s.s * s.s);
@@ -207,7 +195,7 @@ export const reeds = {
       for (let i = 3; i < s.pts.length - 1; i += 4)
         if (s.s > 0.6)
           p.dab(s.pts[i][0], s.pts[i][1], s.w * s.s * 1.35, s.w * s.s * 1.2, tone * 1.6, 0.8, 0.3);
-      if (r.chance(0.3) && s.s > 0.55) {
+      if (r.chance(0.14) && s.s > 0.55) {
         // a dead leaf
         const q = s.pts[Math.min(s.pts.length - 2, 5)],
           dir = r.pick([-1, 1]),
@@ -240,9 +228,7 @@ export const reeds = {
 };
 
 export const stage = {
-  title: "Landing Stage, Four Minutes",
-  aspect: 1,
-  look: { format: "6x6", film: "iso125", ev: 0.1, vignette: 0.36 },
+  look: { ev: 0.1, vignette: 0.36 },
   paint(p, r) {
     const A = p.A,
       yw = r.range(0.38, 0.43),
@@ -273,7 +259,7 @@ export const stage = {
         const z = 1 / (y - yw + 0.04);
         return 1 + 0.05 * c.at((x - 0.5) * z * 0.02 + o, z * 0.11);
       },
-      (a, b) => a * b,
+      "multiply",
       4,
       yw,
       1,
@@ -375,9 +361,7 @@ export const stage = {
 };
 
 export const poplars = {
-  title: "Poplars, Pinhole",
-  aspect: 1,
-  look: { format: "6x6", film: "iso400", ev: 0.3, contrast: 1.12, lens: "pinhole", glow: 0.12 },
+  look: { ev: 0.3, contrast: 1.12, glow: 0.12 },
   paint(p, r) {
     const A = p.A,
       yw = r.range(0.55, 0.6),
@@ -429,9 +413,7 @@ export const poplars = {
 };
 
 export const stars = {
-  title: "Two Hours, Mill Pond",
-  aspect: 0.8,
-  look: { format: "6x7", film: "iso400", ev: 0.2, contrast: 1.05, vignette: 0.3, glow: 0.07, grain: 1.1 },
+  look: { ev: 0.2, contrast: 1.05, vignette: 0.3, glow: 0.07, grain: 1.1 },
   paint(p, r) {
     const A = p.A,
       yw = r.range(0.66, 0.7),
@@ -506,7 +488,7 @@ export const stars = {
       (x) => yw - 0.006 - 0.004 * tile("cloud").at(x * 0.4, 0.7),
       () => 0.004,
     );
-    p.reflect(yw, { ripple: 0.0025, spread: 0.07, dim: 0.7, deep: 0.42, body: 0.004, seed: 5 });
+    p.reflect(yw, { ripple: 0.0025, spread: 0.07, dim: 0.7, deep: 0.42, body: 0.004, seed: 5, cap: 0.13 });
     mist(p, r, {
       tone: 0.13,
       amount: (_x, y) => 0.55 * Math.exp(-(((y - yw - 0.012) / 0.016) ** 2)),
