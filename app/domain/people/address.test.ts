@@ -77,8 +77,8 @@ describe("an address", () => {
   it("asks for no postcode where there may be none", () => {
     expect(problems({ country: "AE", postcode: "" })).toEqual([]);
     expect(problems({ country: "IE", postcode: "" })).toEqual([]);
-    expect(addressSchema.parse({ ...home, country: "IE", postcode: " a65  f4e2 " }).postcode).toBe(
-      "A65 F4E2",
+    expect(addressSchema.parse({ ...home, country: "IE", postcode: " q12  ab34 " }).postcode).toBe(
+      "Q12 AB34",
     );
   });
 
@@ -101,16 +101,16 @@ describe("an address", () => {
 
 describe("postcodes", () => {
   it.each([
-    ["GB", "sw1a1aa", "SW1A 1AA"],
-    ["GB", "M1 1AE", "M1 1AE"],
-    ["NL", "1012ab", "1012 AB"],
-    ["DE", "D-10115", "10115"],
+    ["GB", "qq1a2bc", "QQ1A 2BC"],
+    ["GB", "Q1 2BC", "Q1 2BC"],
+    ["NL", "1234ab", "1234 AB"],
+    ["DE", "D-12345", "12345"],
     ["US", "123456789", "12345-6789"],
-    ["CA", "k1a0b1", "K1A 0B1"],
-    ["PL", "00 001", "00-001"],
-    ["JP", "1000001", "100-0001"],
-    ["SE", "se-111 20", "111 20"],
-    ["LV", "1010", "LV-1010"],
+    ["CA", "x1a2b3", "X1A 2B3"],
+    ["PL", "12 345", "12-345"],
+    ["JP", "1234567", "123-4567"],
+    ["SE", "se-123 45", "123 45"],
+    ["LV", "1234", "LV-1234"],
     ["JE", "je12ab", "JE1 2AB"],
   ])("%s %s is written %s", (country, typed, written) => {
     expect(writePostcode(country, typed)).toBe(written);
@@ -118,11 +118,11 @@ describe("postcodes", () => {
 
   it.each([
     ["GB", "1234"],
-    ["DE", "1011"],
-    ["NL", "0123 AB"],
+    ["DE", "1234"],
+    ["NL", "0234 AB"],
     ["US", "1234"],
-    ["CA", "D1A 0B1"],
-    ["FR", "7500A"],
+    ["CA", "D1A 2B3"],
+    ["FR", "1234A"],
   ])("%s has none like %s", (country, typed) => {
     expect(writePostcode(country, typed)).toBeNull();
   });
@@ -137,7 +137,7 @@ describe("postcodes", () => {
 
   it("are compared as people type them", () => {
     expect(isSamePostcode("AB1 2CD", "ab12cd")).toBe(true);
-    expect(isSamePostcode("00-001", "00001")).toBe(true);
+    expect(isSamePostcode("12-345", "12345")).toBe(true);
     expect(isSamePostcode("AB1 2CD", "AB1 2CE")).toBe(false);
     expect(isSamePostcode("", "")).toBe(false);
   });

@@ -29,9 +29,9 @@ type PostcodeRule = {
   readonly write?: (plain: string) => string;
 };
 
-const digits = (count: number, example: string): PostcodeRule => ({
+const digits = (count: number): PostcodeRule => ({
   pattern: new RegExp(`^\\d{${count}}$`),
-  example,
+  example: "123456".slice(0, count),
 });
 /** Puts a mark so many characters from the start (or, below zero, from the end). */
 const withMark = (at: number, mark: string) => (plain: string) =>
@@ -44,53 +44,53 @@ const british: Pick<PostcodeRule, "write"> = { write: withMark(-3, " ") };
  * have no postcodes, and a wrong guess would turn a buyer away.
  */
 const POSTCODES: Readonly<Record<string, PostcodeRule>> = {
-  AT: digits(4, "1010"),
-  AU: digits(4, "3000"),
-  BE: digits(4, "1000"),
-  BG: digits(4, "1000"),
-  BR: { pattern: /^\d{8}$/, example: "01001-000", write: withMark(5, "-") },
+  AT: digits(4),
+  AU: digits(4),
+  BE: digits(4),
+  BG: digits(4),
+  BR: { pattern: /^\d{8}$/, example: "12345-678", write: withMark(5, "-") },
   CA: {
     pattern: /^[ABCEGHJ-NPRSTVXY]\d[ABCEGHJ-NPRSTV-Z]\d[ABCEGHJ-NPRSTV-Z]\d$/,
-    example: "K1A 0B1",
+    example: "X1A 2B3",
     write: withMark(3, " "),
   },
-  CH: digits(4, "8001"),
-  CY: digits(4, "1010"),
-  CZ: { pattern: /^\d{5}$/, example: "110 00", write: withMark(3, " ") },
-  DE: digits(5, "10115"),
-  DK: digits(4, "1050"),
-  EE: digits(5, "10111"),
-  ES: digits(5, "28001"),
-  FI: digits(5, "00100"),
-  FR: digits(5, "75001"),
+  CH: digits(4),
+  CY: digits(4),
+  CZ: { pattern: /^\d{5}$/, example: "123 45", write: withMark(3, " ") },
+  DE: digits(5),
+  DK: digits(4),
+  EE: digits(5),
+  ES: digits(5),
+  FI: digits(5),
+  FR: digits(5),
   GB: { pattern: /^(GIR0AA|[A-Z]{1,2}\d[A-Z\d]?\d[A-Z]{2})$/, example: "AB1 2CD", ...british },
   GG: { pattern: /^GY\d{1,2}\d[A-Z]{2}$/, example: "GY1 2AB", ...british },
-  GR: { pattern: /^\d{5}$/, example: "105 57", write: withMark(3, " ") },
-  HR: digits(5, "10000"),
-  HU: digits(4, "1011"),
+  GR: { pattern: /^\d{5}$/, example: "123 45", write: withMark(3, " ") },
+  HR: digits(5),
+  HU: digits(4),
   IM: { pattern: /^IM\d{1,2}\d[A-Z]{2}$/, example: "IM1 2AB", ...british },
-  IN: digits(6, "110001"),
-  IT: digits(5, "00118"),
+  IN: digits(6),
+  IT: digits(5),
   JE: { pattern: /^JE\d{1,2}\d[A-Z]{2}$/, example: "JE1 2AB", ...british },
-  JP: { pattern: /^\d{7}$/, example: "100-0001", write: withMark(3, "-") },
-  KR: digits(5, "03051"),
-  LI: digits(4, "9490"),
-  LT: { pattern: /^(LT)?\d{5}$/, example: "LT-01100", write: (plain) => `LT-${plain.slice(-5)}` },
-  LU: { pattern: /^(L)?\d{4}$/, example: "1009", write: (plain) => plain.slice(-4) },
-  LV: { pattern: /^(LV)?\d{4}$/, example: "LV-1010", write: (plain) => `LV-${plain.slice(-4)}` },
-  MC: { pattern: /^980\d{2}$/, example: "98000" },
-  MX: digits(5, "06000"),
-  NL: { pattern: /^[1-9]\d{3}[A-Z]{2}$/, example: "1012 AB", write: withMark(4, " ") },
-  NO: digits(4, "0150"),
-  NZ: digits(4, "6011"),
-  PL: { pattern: /^\d{5}$/, example: "00-001", write: withMark(2, "-") },
-  PT: { pattern: /^\d{7}$/, example: "1000-001", write: withMark(4, "-") },
-  RO: digits(6, "010011"),
-  SE: { pattern: /^\d{5}$/, example: "111 20", write: withMark(3, " ") },
-  SG: digits(6, "018956"),
-  SI: digits(4, "1000"),
-  SK: { pattern: /^\d{5}$/, example: "811 01", write: withMark(3, " ") },
-  TR: digits(5, "06000"),
+  JP: { pattern: /^\d{7}$/, example: "123-4567", write: withMark(3, "-") },
+  KR: digits(5),
+  LI: digits(4),
+  LT: { pattern: /^(LT)?\d{5}$/, example: "LT-12345", write: (plain) => `LT-${plain.slice(-5)}` },
+  LU: { pattern: /^(L)?\d{4}$/, example: "1234", write: (plain) => plain.slice(-4) },
+  LV: { pattern: /^(LV)?\d{4}$/, example: "LV-1234", write: (plain) => `LV-${plain.slice(-4)}` },
+  MC: { pattern: /^980\d{2}$/, example: "98012" },
+  MX: digits(5),
+  NL: { pattern: /^[1-9]\d{3}[A-Z]{2}$/, example: "1234 AB", write: withMark(4, " ") },
+  NO: digits(4),
+  NZ: digits(4),
+  PL: { pattern: /^\d{5}$/, example: "12-345", write: withMark(2, "-") },
+  PT: { pattern: /^\d{7}$/, example: "1012-345", write: withMark(4, "-") },
+  RO: digits(6),
+  SE: { pattern: /^\d{5}$/, example: "123 45", write: withMark(3, " ") },
+  SG: digits(6),
+  SI: digits(4),
+  SK: { pattern: /^\d{5}$/, example: "123 45", write: withMark(3, " ") },
+  TR: digits(5),
   US: {
     pattern: /^\d{5}(\d{4})?$/,
     example: "12345",
@@ -117,14 +117,14 @@ export function postcodeExample(country: string): string | null {
 }
 
 /**
- * A postcode as its country writes it: "sw1a1aa" is "SW1A 1AA" in GB, "1012ab" is "1012 AB" in NL. Null when it is none of that
+ * A postcode as its country writes it: "ab12cd" is "AB1 2CD" in GB, "1234ab" is "1234 AB" in NL. Null when it is none of that
  * country's. Where no form is known, the text with its spaces put in order.
  */
 export function writePostcode(country: string, text: string): string | null {
   const rule = needsPostcode(country) ? POSTCODES[country] : undefined;
   if (rule === undefined) return text.trim().replace(/\s+/g, " ").toUpperCase();
   const plain = text.toUpperCase().replace(/[\s\-\u2010-\u2014]/g, "");
-  // The dialling letters some people put before the digits: "D-10115", "F-75001".
+  // The dialling letters some people put before the digits: "D-12345", "F-12345".
   const bare = plain.replace(new RegExp(`^(${country}|${country.charAt(0)})(?=\\d+$)`), "");
   const known = [plain, bare].find((candidate) => rule.pattern.test(candidate));
   if (known === undefined) return null;
