@@ -84,7 +84,7 @@ const POSTCODES: Readonly<Record<string, PostcodeRule>> = {
   NO: digits(4),
   NZ: digits(4),
   PL: { pattern: /^\d{5}$/, example: "12-345", write: withMark(2, "-") },
-  PT: { pattern: /^\d{7}$/, example: "1012-345", write: withMark(4, "-") },
+  PT: { pattern: /^\d{7}$/, example: "1234-567", write: withMark(4, "-") },
   RO: digits(6),
   SE: { pattern: /^\d{5}$/, example: "123 45", write: withMark(3, " ") },
   SG: digits(6),
