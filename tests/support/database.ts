@@ -1,3 +1,4 @@
+import { randomUUID } from "node:crypto";
 import pg from "pg";
 import { migrate } from "../../scripts/migrate";
 
@@ -63,6 +64,28 @@ async function openWorkerDatabase(): Promise<TestDatabase> {
   });
   if (!made) await database.reset();
   return database;
+}
+
+/**
+ * One more database without anything in it, for tests of the migration itself.
+ *
+ * @returns its owner's connection, the application's role, and a function that drops it.
+ */
+export async function bareDatabase(): Promise<{ ownerUrl: string; appRole: string; drop(): Promise<void> }> {
+  const superuser = required("TEST_POSTGRES_URL");
+  const name = `${required("TEST_TEMPLATE_DATABASE").replace("_template_", "_bare_")}_${randomUUID().slice(0, 8)}`;
+  assertTestDatabaseName(name);
+  await withClient(superuser, (client) =>
+    query(client, `create database ${quoted(name)} owner ${OWNER_ROLE}`),
+  );
+  return {
+    ownerUrl: connectionUrl(superuser, name, OWNER_ROLE),
+    appRole: APP_ROLE,
+    drop: () =>
+      withClient(superuser, (client) =>
+        query(client, `drop database if exists ${quoted(name)} with (force)`),
+      ),
+  };
 }
 
 /**
