@@ -1,6 +1,7 @@
 import { readFileSync } from "node:fs";
 import { createServer, type IncomingMessage, type ServerResponse } from "node:http";
 import { join } from "node:path";
+import { setTimeout as wait } from "node:timers/promises";
 import { z } from "zod";
 import { routeFor } from "./api";
 import { readCard } from "./cards";
@@ -173,15 +174,13 @@ export function createStripeFake(options: StripeFakeOptions): StripeFake {
     sender.send();
   }
 
-  function pause(milliseconds: number): Promise<void> {
-    if (milliseconds === 0) return Promise.resolve();
-    return new Promise((resolve, reject) => {
-      const wait = setTimeout(resolve, milliseconds);
-      stop.signal.addEventListener("abort", () => {
-        clearTimeout(wait);
-        reject(new Dropped());
-      });
-    });
+  async function pause(milliseconds: number): Promise<void> {
+    if (milliseconds === 0) return;
+    try {
+      await wait(milliseconds, undefined, { signal: stop.signal });
+    } catch {
+      throw new Dropped();
+    }
   }
 
   function sendJson(
