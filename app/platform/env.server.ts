@@ -34,6 +34,8 @@ const schema = z.object({
   STRIPE_PUBLIC_URL: z.string().default("https://checkout.stripe.com"),
   SMTP_URL: z.string().min(1),
   MAIL_FROM: z.string().min(3),
+  /** The one-time code for /setup of a new studio; empty once it has been set up. */
+  SETUP_CODE: z.string().default(""),
   LOG_LEVEL: z.enum(["trace", "debug", "info", "warn", "error", "silent"]).default("info"),
   TRUST_PROXY: z.string().default(""),
   /** Set where the shop is reached over TLS; makes cookies Secure and sends HSTS. Derived from BASE_URL if unset. */

@@ -13,7 +13,8 @@ import { ROLES } from "./permissions";
 export const SHORTEST_PASSWORD = 12;
 const LONGEST_PASSWORD = 200;
 
-const newPassword = z
+/** A password that is being chosen. */
+export const newPassword = z
   .string("passwordMissing")
   .min(1, "passwordMissing")
   .min(SHORTEST_PASSWORD, "passwordShort")
