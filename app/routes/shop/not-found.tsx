@@ -1,10 +1,10 @@
-// PLACEHOLDER_ROUTE
 import { AppError } from "~/platform/errors";
 
-export function loader() {
+/** Every address below the shop that nothing else answers to. */
+export function loader(): never {
   throw new AppError("not_found");
 }
 
-export default function Page() {
+export default function NotFound() {
   return null;
 }
