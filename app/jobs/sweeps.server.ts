@@ -1,5 +1,4 @@
-import { sweepSessions } from "~/domain/people/sessions.server";
-import { resendWaiting } from "~/emails/send.server";
+import { findLostImaging, keepReleases, takeArrivedScans } from "~/domain/rolls/look-after-scans.server";
 
 /** Something looked after again and again, so that nothing rests on a job that was never made or was lost. */
 export type Sweep = {
@@ -10,6 +9,7 @@ export type Sweep = {
 };
 
 export const SWEEPS: readonly Sweep[] = [
-  { name: "owed-emails", everySeconds: 60, run: async () => void (await resendWaiting()) },
-  { name: "old-sessions", everySeconds: 3_600, run: async () => void (await sweepSessions()) },
+  { name: "releases", everySeconds: 15, run: keepReleases },
+  { name: "arrived-scans", everySeconds: 30, run: takeArrivedScans },
+  { name: "lost-imaging", everySeconds: 60, run: findLostImaging },
 ];

@@ -2,14 +2,19 @@ import { createWriteStream } from "node:fs";
 import { Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import {
+  AbortMultipartUploadCommand,
+  CompleteMultipartUploadCommand,
   CopyObjectCommand,
+  CreateMultipartUploadCommand,
   DeleteObjectCommand,
   GetObjectCommand,
   HeadBucketCommand,
   HeadObjectCommand,
+  ListPartsCommand,
   NotFound,
   PutObjectCommand,
   S3Client,
+  UploadPartCommand,
 } from "@aws-sdk/client-s3";
 import { getSignedUrl } from "@aws-sdk/s3-request-presigner";
 import { env } from "./env.server";
@@ -48,6 +53,46 @@ export function presignPut(
     }),
     { expiresIn: seconds, signableHeaders: new Set(["host", "content-type", "content-length"]) },
   );
+}
+
+/** One request of an upload in parts (S3 multipart upload). */
+export type MultipartRequest =
+  | { step: "create"; contentType: string }
+  | { step: "part"; uploadId: string; partNumber: number }
+  | { step: "list" | "complete" | "abort"; uploadId: string };
+
+/** A presigned request of an upload in parts to a private object; S3 itself binds the upload's id to the key. */
+export function presignMultipart(key: string, request: MultipartRequest, seconds: number): Promise<string> {
+  const object = { Bucket: env.S3_BUCKET_PRIVATE, Key: key };
+  const options = { expiresIn: seconds };
+  switch (request.step) {
+    case "create":
+      return getSignedUrl(
+        client,
+        new CreateMultipartUploadCommand({ ...object, ContentType: request.contentType }),
+        { ...options, signableHeaders: new Set(["host", "content-type"]) },
+      );
+    case "part":
+      return getSignedUrl(
+        client,
+        new UploadPartCommand({ ...object, UploadId: request.uploadId, PartNumber: request.partNumber }),
+        options,
+      );
+    case "list":
+      return getSignedUrl(client, new ListPartsCommand({ ...object, UploadId: request.uploadId }), options);
+    case "complete":
+      return getSignedUrl(
+        client,
+        new CompleteMultipartUploadCommand({ ...object, UploadId: request.uploadId }),
+        options,
+      );
+    case "abort":
+      return getSignedUrl(
+        client,
+        new AbortMultipartUploadCommand({ ...object, UploadId: request.uploadId }),
+        options,
+      );
+  }
 }
 
 /** A presigned GET of a private object, ending after `seconds`. */

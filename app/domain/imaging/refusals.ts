@@ -31,6 +31,8 @@ export const refusals = {
   sizeDiffers: (arrived: number, declared: number) =>
     `${figures.format(arrived)} bytes arrived, but the file has ${figures.format(declared)}. Send it again.`,
 
+  notInStorage: () => "The file has gone from storage before it could be read. Send it again.",
+
   notAPicture: () => `What is in the file is not a picture, whatever its name says. ${TAKEN}`,
 
   otherKind: (kind: OtherKind) => `This is ${OTHER_KINDS[kind]}. ${TAKEN}`,
