@@ -1,13 +1,16 @@
 import { spawn } from "node:child_process";
 import path from "node:path";
 import { fileURLToPath } from "node:url";
+import { INSTANCE_LOCK } from "./lib/instance.mjs";
+import { lockNote } from "./lib/locks.mjs";
 import { PlainError } from "./lib/plain-error.mjs";
+import { dataDirectoryOf } from "./lib/settings.mjs";
 import { ensureBuild, ensureNodePackages } from "./lib/source.mjs";
 import { taskEnvironment } from "./lib/tasks.mjs";
 
 /*
- * `npm run serve`, `worker`, `migrate`, `seed` and `build`: one process, on real services or on those of a running
- * instance.
+ * `npm run serve`, `worker`, `migrate`, `seed`, `bench` and `build`: one process, on real services or on those of a
+ * running instance.
  */
 
 const PROJECT = path.dirname(path.dirname(fileURLToPath(import.meta.url)));
@@ -40,9 +43,17 @@ async function main([task, ...rest]) {
         NODE_ENV: "production",
         ...(await taskEnvironment(process.env, PROJECT)),
       });
+    case "bench":
+      return runHere([...script("bench/main"), ...(await runningShop())], {});
     default:
       throw new PlainError(`There is no task "${task}".`);
   }
+}
+
+/** @returns {Promise<string[]>} the address of the shop on this data folder, if it runs. */
+async function runningShop() {
+  const address = await lockNote(INSTANCE_LOCK, dataDirectoryOf(process.env, PROJECT));
+  return address ? [address] : [];
 }
 
 /**
