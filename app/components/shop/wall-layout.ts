@@ -20,6 +20,8 @@ const eyeLevel = 1500;
 const floor = 130;
 /** Room under a sheet for its two lines of words. */
 const words = 260;
+/** A small sheet takes this much of a narrow wall, so that its words do not meet the next one's. */
+const narrowestSlot = 700;
 
 /**
  * Lays sheets on a wall. `wide` hangs them in one row, their middles at eye level; `narrow`, for a
@@ -30,13 +32,13 @@ export function layOutWall(sheets: readonly WallSheet[], view: "wide" | "narrow"
 }
 
 function inOneRow(sheets: readonly WallSheet[]): WallLayout {
-  const margin = 250;
   const gap = 210;
   const chair = { width: 560, height: 880, bottom: 60 };
   const taken = sheets.reduce((sum, one) => sum + one.sheet.width + gap, 0) - gap;
-  const width = Math.max(3800, margin + Math.max(taken, 0) + gap + chair.width + 170);
+  const beside = chair.width + 170;
+  const width = Math.max(3800, 250 + Math.max(taken, 0) + gap + beside);
   const tallest = Math.max(0, ...sheets.map((one) => one.sheet.height));
-  let x = margin;
+  let x = (width - beside - Math.max(taken, 0)) / 2;
   const places = sheets.map((one) => {
     const place = { x, bottom: eyeLevel - one.sheet.height / 2 };
     x += one.sheet.width + gap;
@@ -53,18 +55,19 @@ function inOneRow(sheets: readonly WallSheet[]): WallLayout {
 
 function inRows(sheets: readonly WallSheet[]): WallLayout {
   const margin = 130;
-  const gap = 130;
-  const width = Math.max(2200, ...sheets.map((one) => one.sheet.width + 2 * margin));
+  const gap = 100;
+  const slot = (one: WallSheet) => Math.max(one.sheet.width, narrowestSlot);
+  const width = Math.max(2200, ...sheets.map((one) => slot(one) + 2 * margin));
   const chair = { width: 480, height: 754, bottom: 60, x: width - 50 - 480 };
   const rows: number[][] = [];
   let right = Number.POSITIVE_INFINITY;
   sheets.forEach((one, at) => {
-    if (right + one.sheet.width > width - margin) {
+    if (right + slot(one) > width - margin) {
       rows.push([]);
       right = margin;
     }
     rows.at(-1)?.push(at);
-    right += one.sheet.width + gap;
+    right += slot(one) + gap;
   });
   const lastWidth = right - gap;
   const places: WallLayout["places"] = sheets.map(() => ({ x: 0, bottom: 0 }));
@@ -77,7 +80,7 @@ function inRows(sheets: readonly WallSheet[]): WallLayout {
       const one = sheets[at];
       if (!one) continue;
       places[at] = { x, bottom: foot };
-      x += one.sheet.width + gap;
+      x += slot(one) + gap;
       tallest = Math.max(tallest, one.sheet.height);
     }
     foot += tallest + words;

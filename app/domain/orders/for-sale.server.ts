@@ -69,9 +69,16 @@ export async function formatsForSale(
     .where(and(inArray(priceSteps.formatId, wanted), isNull(priceSteps.supersededAt)))
     .orderBy(asc(priceSteps.fromNumber));
   const free = await db
-    .select({ id: copies.id, editionId: copies.editionId, number: copies.number, checkCode: copies.checkCode })
+    .select({
+      id: copies.id,
+      editionId: copies.editionId,
+      number: copies.number,
+      checkCode: copies.checkCode,
+    })
     .from(copies)
-    .where(and(inArray(copies.editionId, editionIds), eq(copies.run, "numbered"), eq(copies.placement, "in_hand")))
+    .where(
+      and(inArray(copies.editionId, editionIds), eq(copies.run, "numbered"), eq(copies.placement, "in_hand")),
+    )
     .orderBy(asc(copies.number));
   const pictures = await db
     .select({ printId: printPictures.printId, frameId: printPictures.frameId })

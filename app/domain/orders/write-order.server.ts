@@ -131,15 +131,13 @@ export async function writeHeldOrder(tx: Tx, order: NewOrder): Promise<WrittenOr
       .returning({ id: copies.id });
     if (moved.length !== 1)
       throw new Error(`copy ${line.copyId} was not in hand although its edition is locked`);
-    await tx.db
-      .insert(holds)
-      .values({
-        id: newId(),
-        copyId: line.copyId,
-        orderLineId: lineId,
-        heldAt: at,
-        until: order.holdUntil ?? WITHOUT_END,
-      });
+    await tx.db.insert(holds).values({
+      id: newId(),
+      copyId: line.copyId,
+      orderLineId: lineId,
+      heldAt: at,
+      until: order.holdUntil ?? WITHOUT_END,
+    });
   }
   await tx.db.insert(orderEvents).values({ orderId, kind: "placed", at, visibleToBuyer: true });
   if (order.holdUntil !== null) {

@@ -76,6 +76,7 @@ export const shop = {
   nextIs: "als Nächstes {mark}",
   yours: "Ihre wäre die Nummer {mark}.",
   putInBasket: "{mark} in den Korb legen",
+  putChosenInBasket: "Die gewählte in den Korb legen",
   notSetAside:
     "Eine Nummer im Korb ist noch nicht zurückgelegt. Wenn Sie zu bezahlen beginnen, wird Ihnen die niedrigste freie Nummer für {minutes} Minuten gehalten.",
   noneToBuy: "Von diesem Abzug ist zurzeit nichts zu kaufen.",

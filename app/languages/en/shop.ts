@@ -76,6 +76,7 @@ export const shop = {
   nextIs: "next is {mark}",
   yours: "Yours would be number {mark}.",
   putInBasket: "Put {mark} in the basket",
+  putChosenInBasket: "Put the chosen one in the basket",
   notSetAside:
     "A number in the basket is not yet set aside. When you begin to pay, the lowest number in hand is held for you for {minutes} minutes.",
   noneToBuy: "Nothing of this print can be bought now.",
