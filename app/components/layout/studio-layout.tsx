@@ -97,7 +97,10 @@ export function StudioLayout({
                   Sign out
                 </button>
               </Form>
-              <span>All times are {zone}</span>
+              <span>
+                <span className="wide">All times are </span>
+                {zone}
+              </span>
             </div>
           </div>
         </nav>

@@ -15,7 +15,7 @@ export type BookLine = {
   copy: string | null;
   /** The word the line is known by: "Sold". */
   verb: string;
-  /** What follows it: "to Tobias Wrenfield, order 1181". */
+  /** What follows it: "to Tobias Wrenfield, order 1181"; text that begins with a stop or comma joins the word. */
   entry: ReactNode;
   /** As printed; nothing where no money moved. */
   money: string | null;
@@ -59,7 +59,9 @@ const columns: readonly TableColumn<BookLine>[] = [
     place: "main",
     cell: (line) => (
       <>
-        <span className="verb">{line.verb}</span> {line.entry}
+        <span className="verb">{line.verb}</span>
+        {typeof line.entry === "string" && /^[,:;.]/.test(line.entry) ? null : " "}
+        {line.entry}
       </>
     ),
   },

@@ -9,19 +9,19 @@ export type ForeEdgeProps = {
   label: string;
 };
 
-const height = 20;
-
-/** Pixels from one bar to the next, and the width of a bar: thinner for editions of many copies. */
-function pitchFor(count: number): { pitch: number; bar: number } {
-  if (count > 60) return { pitch: 4, bar: 3 };
-  if (count > 30) return { pitch: 5, bar: 4 };
-  return { pitch: 7, bar: 5 };
-}
+/** Bars in a row; a longer edition is cut into as many even rows as it takes. */
+const longestRow = 30;
+const pitch = 7;
+const bar = 5;
+const gap = 4;
 
 /** An edition seen from the side: one bar a copy. */
 export function ForeEdge({ copies, label }: ForeEdgeProps) {
-  const { pitch, bar } = pitchFor(copies.length);
-  const width = copies.length * pitch + 2;
+  const rows = Math.max(1, Math.ceil(copies.length / longestRow));
+  const perRow = Math.ceil(copies.length / rows);
+  const high = rows === 1 ? 20 : 14;
+  const width = perRow * pitch + 2;
+  const height = rows * (high + gap) - gap;
   return (
     <svg
       className="fore-edge"
@@ -33,45 +33,50 @@ export function ForeEdge({ copies, label }: ForeEdgeProps) {
       preserveAspectRatio="none"
     >
       {copies.map((copy, at) => (
-        <Bar key={`${runMark(copy.run)}${copy.number}`} copy={copy} x={at * pitch + 1} width={bar} />
+        <g
+          key={`${runMark(copy.run)}${copy.number}`}
+          transform={`translate(${(at % perRow) * pitch + 1} ${Math.floor(at / perRow) * (high + gap)})`}
+        >
+          <Bar copy={copy} high={high} />
+        </g>
       ))}
     </svg>
   );
 }
 
-function Bar({ copy, x, width }: { copy: ForeEdgeCopy; x: number; width: number }) {
-  const open = { x: x + 0.5, width: width - 1 };
-  const full = { x, width };
-  if (copy.next)
-    return <rect className="fe-next" x={x + 0.5} y="1" width={width - 0.5} height={height - 2} />;
+function Bar({ copy, high }: { copy: ForeEdgeCopy; high: number }) {
+  const open = { x: 0.5, width: bar - 1 };
+  const full = { x: 0, width: bar };
+  const half = high / 2;
+  if (copy.next) return <rect className="fe-next" x="0.5" y="1" width={bar - 0.5} height={high - 2} />;
   switch (copy.placement) {
     case "sold":
     case "given":
     case "kept":
     case "gone":
-      return <rect className="fe-full" {...full} y="0" height={height} />;
+      return <rect className="fe-full" {...full} y="0" height={high} />;
     case "held":
-      return <rect className="fe-open fe-dash" {...open} y="5" height={height - 5.5} />;
+      return <rect className="fe-open fe-dash" {...open} y={high * 0.25} height={high * 0.75 - 0.5} />;
     case "set_aside":
       return (
         <>
-          <rect className="fe-open" {...open} y="0.5" height={height - 1} />
-          <rect className="fe-full" {...full} y="10" height="4" />
+          <rect className="fe-open" {...open} y="0.5" height={high - 1} />
+          <rect className="fe-full" {...full} y={half} height="4" />
         </>
       );
     case "coming_back":
-      return <rect className="fe-open" {...open} y="0.5" height={height / 2} />;
+      return <rect className="fe-open" {...open} y="0.5" height={half} />;
     case "consigned":
       return (
         <>
-          <rect className="fe-open" {...open} y="0.5" height={height - 1} />
-          <rect className="fe-full" {...full} y="0" height={height / 2} />
+          <rect className="fe-open" {...open} y="0.5" height={high - 1} />
+          <rect className="fe-full" {...full} y="0" height={half} />
         </>
       );
     case "retired":
-      return <rect className="fe-stub" {...full} y={height - 6.5} height="6.5" />;
+      return <rect className="fe-stub" {...full} y={high * 0.68} height={high * 0.32} />;
     case "in_hand":
     case "free":
-      return <rect className="fe-open" {...open} y="0.5" height={height - 1} />;
+      return <rect className="fe-open" {...open} y="0.5" height={high - 1} />;
   }
 }

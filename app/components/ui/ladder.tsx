@@ -1,3 +1,4 @@
+import { useId } from "react";
 import { type LeafPlacement, type LeafRun, runMark } from "~/components/ui/leaf";
 
 export type LadderStep = {
@@ -60,6 +61,7 @@ export function PriceLadder({ steps, copies, label }: PriceLadderProps) {
   const highest = Math.max(...steps.map((step) => step.amount), 1);
   const barWidth = narrowest / Math.max(copies.length, 1);
   const many = copies.length > 20;
+  const hatch = useId();
   return (
     <ol className={many ? "ladder ladder-many" : "ladder"} aria-label={label}>
       {copies.map((copy) => {
@@ -68,15 +70,24 @@ export function PriceLadder({ steps, copies, label }: PriceLadderProps) {
         const first = step?.fromNumber === copy.number;
         const room = copies.length - copy.number + 1;
         const tagWidth = (step?.price.length ?? 0) * character;
+        const shape = shapeOf(copy);
         const stepWidth = step ? (step.toNumber - step.fromNumber + 1) * barWidth : 0;
         return (
           <li
             key={`${runMark(copy.run)}${copy.number}`}
-            data-shape={shapeOf(copy)}
+            data-shape={shape}
             data-first={first || copy.number === copies.length ? "" : undefined}
           >
             <svg aria-hidden="true" focusable="false" width="100%" height="100%">
-              <rect x="0" y={`${100 - share}%`} width="100%" height={`${share}%`} />
+              {shape === "off" ? <Hatch id={`${hatch}${copy.number}`} /> : null}
+              <rect
+                className="ladder-bar"
+                x="0"
+                y={`${100 - share}%`}
+                width="100%"
+                height={`${share}%`}
+                fill={shape === "off" ? `url(#${hatch}${copy.number})` : undefined}
+              />
               {first && step ? (
                 <text
                   className={stepWidth < tagWidth && room * barWidth >= tagWidth ? "tag tag-tight" : "tag"}
@@ -98,5 +109,14 @@ export function PriceLadder({ steps, copies, label }: PriceLadderProps) {
         );
       })}
     </ol>
+  );
+}
+
+/** Ruled paper: a copy that is not for sale. */
+function Hatch({ id }: { id: string }) {
+  return (
+    <pattern id={id} width="7" height="7" patternUnits="userSpaceOnUse" patternTransform="rotate(45)">
+      <rect className="hatch" width="3" height="7" />
+    </pattern>
   );
 }

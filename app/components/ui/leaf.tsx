@@ -72,8 +72,8 @@ const drawings: Record<LeafPlacement, ReactNode> = {
   set_aside: (
     <>
       {bare}
-      <path className="lf-fold" d="M3.5 37.5H44.5V47H3.5Z" />
-      <path className="lf-stroke" d="M30 47L34 37.5" />
+      <path className="lf-fold" d="M4 38H44V46.5H4Z" />
+      <path className="lf-stroke" d="M30.5 46.5L34 38" />
     </>
   ),
   sold: inked,
@@ -125,6 +125,7 @@ const spoiledBehind = (
 /** One copy drawn as a small sheet that carries its number; its shape says where the copy stands. */
 export function Leaf({ number, run, placement, word, next, reprinted, href, size }: LeafProps) {
   const mark = runMark(run);
+  const signs = mark.length + String(number).length;
   const drawn = (
     <>
       <svg className="leaf-sheet" viewBox="0 0 48 60" aria-hidden="true" focusable="false">
@@ -142,7 +143,7 @@ export function Leaf({ number, run, placement, word, next, reprinted, href, size
     className: size ? `leaf leaf-${size}` : "leaf",
     "data-placement": placement,
     "data-next": next ? "" : undefined,
-    "data-long": mark.length + String(number).length > 2 ? "" : undefined,
+    "data-long": signs > 4 ? "very" : signs > 2 ? "" : undefined,
   };
   return href ? (
     <Link {...shared} to={href}>

@@ -25,7 +25,7 @@ const done: Record<SheetMaking, number> = {
   delivered: 5,
   spoiled: 0,
   lost: 0,
-  returned: 5,
+  returned: 0,
   destroyed: 0,
 };
 
