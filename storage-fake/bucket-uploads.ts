@@ -2,7 +2,7 @@ import { randomBytes, randomUUID } from "node:crypto";
 import { mkdir, readdir, readFile, rename, rm } from "node:fs/promises";
 import path from "node:path";
 import type { BucketObjects, Contents, ReportProblem, WriteConditions } from "./bucket-objects";
-import { joinChecksums, joinETags, type PartDigest } from "./checksums";
+import { type Checksum, joinChecksums, joinETags, type PartChecksum, type PartDigest } from "./checksums";
 import {
   FOLDER_MODE,
   hasCode,
@@ -36,15 +36,14 @@ export interface NamedPart {
   number: number;
   /** Without quotes. */
   etag: string;
-  /** Base64, by the upload's algorithm. */
-  checksumValue: string | undefined;
+  checksum: PartChecksum | undefined;
 }
 
 export interface Completion {
   parts: readonly NamedPart[];
   conditions: WriteConditions;
   /** What the client says the whole is, to be checked. */
-  expectedChecksum: string | undefined;
+  expectedChecksum: PartChecksum | undefined;
   expectedSize: number | undefined;
   modifiedAt: number;
 }
@@ -239,7 +238,9 @@ function chooseParts(upload: Upload, named: readonly NamedPart[]): PartRecord[] 
 function choosePart(upload: Upload, named: NamedPart): PartRecord {
   const { checksum, uploadId } = upload.record;
   const part = upload.parts.get(named.number);
-  const sameChecksum = named.checksumValue === undefined || named.checksumValue === part?.checksumValue;
+  const sameChecksum =
+    named.checksum === undefined ||
+    (named.checksum.algorithm === part?.checksum?.algorithm && named.checksum.value === part.checksum.value);
   if (!part || part.etag !== named.etag || !sameChecksum) {
     throw new StorageError(
       "InvalidPart",
@@ -249,7 +250,7 @@ function choosePart(upload: Upload, named: NamedPart): PartRecord {
       },
     );
   }
-  if (checksum?.type === "COMPOSITE" && named.checksumValue === undefined) {
+  if (checksum?.type === "COMPOSITE" && named.checksum === undefined) {
     throw new StorageError(
       "InvalidRequest",
       `The upload was begun with ${checksum.algorithm} checksums, so its completion must name that of each part; part ${named.number} has none.`,
@@ -258,18 +259,23 @@ function choosePart(upload: Upload, named: NamedPart): PartRecord {
   return part;
 }
 
-function wholeChecksum(upload: UploadRecord, parts: readonly PartRecord[], expected: string | undefined) {
+/** @throws StorageError InvalidRequest, BadDigest when the client expects another checksum of the whole */
+function wholeChecksum(
+  upload: UploadRecord,
+  parts: readonly PartRecord[],
+  expected: PartChecksum | undefined,
+): Checksum | undefined {
+  if (expected && expected.algorithm !== upload.checksum?.algorithm) {
+    throw new StorageError("InvalidRequest", `The upload was not begun for ${expected.algorithm} checksums.`);
+  }
   if (!upload.checksum) return undefined;
   const { algorithm, type } = upload.checksum;
   const digests = parts.map(
-    (part): PartDigest => ({ size: part.segment.size, value: part.checksumValue ?? "" }),
+    (part): PartDigest => ({ size: part.segment.size, value: part.checksum?.value ?? "" }),
   );
   const checksum = joinChecksums(algorithm, type, digests);
-  if (
-    expected !== undefined &&
-    expected !== checksum.value &&
-    expected !== checksum.value.replace(/-\d+$/, "")
-  ) {
+  const withoutCount = checksum.value.replace(/-\d+$/, "");
+  if (expected && expected.value !== checksum.value && expected.value !== withoutCount) {
     throw new StorageError("BadDigest", `The ${algorithm} checksum is not that of the joined parts.`);
   }
   return checksum;

@@ -9,6 +9,13 @@ export type DigestName = "md5" | ChecksumAlgorithm;
 /** FULL_OBJECT covers the bytes; COMPOSITE covers the checksums of the parts, as a multipart ETag does. */
 export type ChecksumType = "FULL_OBJECT" | "COMPOSITE";
 
+/** The checksum of one run of bytes. */
+export interface PartChecksum {
+  algorithm: ChecksumAlgorithm;
+  /** Base64. */
+  value: string;
+}
+
 export interface Checksum {
   algorithm: ChecksumAlgorithm;
   type: ChecksumType;

@@ -70,8 +70,8 @@ export const partRecordSchema = z.object({
   /** The MD5 as hex, without quotes. */
   etag: z.string(),
   modifiedAt: z.number(),
-  /** Base64, by the algorithm of the upload. */
-  checksumValue: z.string().optional(),
+  /** By the algorithm of the upload; where that has none, the one the client gave of its own accord. */
+  checksum: checksumSchema.omit({ type: true }).optional(),
   segment: segmentSchema,
 });
 

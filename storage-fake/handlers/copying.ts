@@ -5,6 +5,7 @@ import {
   type ChecksumAlgorithm,
   checksumElement,
   type DigestName,
+  type PartChecksum,
   parseChecksumAlgorithm,
 } from "../checksums";
 import { evaluateConditions } from "../conditions";
@@ -141,7 +142,7 @@ export function sendCopyResult(
   root: "CopyObjectResult" | "CopyPartResult",
   etag: string,
   modifiedAt: number,
-  checksum: Pick<Checksum, "algorithm" | "value"> | undefined,
+  checksum: PartChecksum | undefined,
 ): void {
   const checksumMarkup: Markup[] = checksum
     ? optionalElement(checksumElement(checksum.algorithm), checksum.value)

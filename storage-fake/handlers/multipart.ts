@@ -2,17 +2,19 @@ import { readAttributes } from "../attributes";
 import type { NamedPart } from "../bucket-uploads";
 import { parseRange } from "../byte-ranges";
 import {
-  type Checksum,
+  CHECKSUM_ALGORITHMS,
   type ChecksumAlgorithm,
   type ChecksumType,
   checksumElement,
   checksumHeader,
   type DigestName,
   defaultChecksumType,
+  type PartChecksum,
   parseChecksumAlgorithm,
   supportsChecksumType,
 } from "../checksums";
 import { stripETag } from "../conditions";
+import type { TemporaryFile } from "../durable-files";
 import { StorageError } from "../errors";
 import { checksumValues, IncomingContent } from "../incoming-content";
 import { compareKeys } from "../key-order";
@@ -102,22 +104,33 @@ export async function uploadPart(context: RequestContext): Promise<void> {
     number,
     etag: file.digests.hex("md5"),
     modifiedAt: context.now().getTime(),
-    checksumValue: planned && file.digests.base64(planned),
+    checksum: partChecksum(file, planned ?? content.checksumAlgorithm),
   });
-  const checksumHeaders: Record<string, string> =
-    planned && part.checksumValue ? { [checksumHeader(planned)]: part.checksumValue } : {};
+  const checksumHeaders: Record<string, string> = part.checksum
+    ? { [checksumHeader(part.checksum.algorithm)]: part.checksum.value }
+    : {};
   context.sendEmpty(200, { ETag: quoteETag(part.etag), ...checksumHeaders });
 }
 
-/** A part's checksum must be of the upload's algorithm, and must be given when the whole is made of the parts' own. */
+function partChecksum(
+  file: TemporaryFile,
+  algorithm: ChecksumAlgorithm | undefined,
+): PartChecksum | undefined {
+  return algorithm && { algorithm, value: file.digests.base64(algorithm) };
+}
+
+/**
+ * A part's checksum must be of the algorithm the upload was begun for, and must be given when the checksum of the
+ * whole is made of the parts' own. An upload that was begun for none takes any: the SDK by its own default begins
+ * one so, and then gives a checksum with each part.
+ */
 function requirePlannedChecksum(upload: UploadRecord, given: ChecksumAlgorithm | undefined): void {
   const planned = upload.checksum;
-  if (given === planned?.algorithm) return;
-  if (given === undefined && planned?.type === "FULL_OBJECT") return;
-  const expected = planned?.algorithm ?? "null";
+  if (!planned || given === planned.algorithm) return;
+  if (given === undefined && planned.type === "FULL_OBJECT") return;
   throw new StorageError(
     "InvalidRequest",
-    `The upload was begun for checksums of type ${expected}; the part has one of type ${given ?? "null"}.`,
+    `The upload was begun for ${planned.algorithm} checksums; the part has ${given ?? "none"}.`,
   );
 }
 
@@ -142,11 +155,9 @@ export async function uploadPartCopy(context: RequestContext): Promise<void> {
       number,
       etag: file.digests.hex("md5"),
       modifiedAt: context.now().getTime(),
-      checksumValue: planned && file.digests.base64(planned),
+      checksum: partChecksum(file, planned),
     });
-    const checksum: Pick<Checksum, "algorithm" | "value"> | undefined =
-      planned && part.checksumValue ? { algorithm: planned, value: part.checksumValue } : undefined;
-    sendCopyResult(context, "CopyPartResult", part.etag, part.modifiedAt, checksum);
+    sendCopyResult(context, "CopyPartResult", part.etag, part.modifiedAt, part.checksum);
   } finally {
     source.reader.close();
   }
@@ -181,19 +192,17 @@ export function listParts(context: RequestContext): void {
     element("IsTruncated", truncated),
     ...optionalElement("ChecksumAlgorithm", upload.checksum?.algorithm.toUpperCase()),
     ...optionalElement("ChecksumType", upload.checksum?.type),
-    ...page.map((part) => describePart(upload, part)),
+    ...page.map((part) => describePart(part)),
   ]);
 }
 
-function describePart(upload: UploadRecord, part: PartRecord): Markup {
+function describePart(part: PartRecord): Markup {
   return element("Part", [
     element("PartNumber", part.number),
     element("LastModified", new Date(part.modifiedAt).toISOString()),
     element("ETag", quoteETag(part.etag)),
     element("Size", part.segment.size),
-    ...(upload.checksum
-      ? optionalElement(checksumElement(upload.checksum.algorithm), part.checksumValue)
-      : []),
+    ...(part.checksum ? [element(checksumElement(part.checksum.algorithm), part.checksum.value)] : []),
   ]);
 }
 
@@ -213,7 +222,7 @@ export async function completeMultipartUpload(context: RequestContext): Promise<
   const record = await bucket.uploads.complete(key, uploadId, {
     parts: childrenNamed(root, "Part").map(readNamedPart),
     conditions,
-    expectedChecksum: wholeChecksum?.value,
+    expectedChecksum: wholeChecksum,
     expectedSize: size === undefined ? undefined : parseCount(size, "x-amz-mp-object-size", 0),
     modifiedAt: context.now().getTime(),
   });
@@ -235,8 +244,11 @@ function readNamedPart(node: XmlNode): NamedPart {
   if (!Number.isInteger(number) || number < 1 || etag === undefined) {
     throw new StorageError("MalformedXML", "Each part needs its PartNumber and its ETag.");
   }
-  const checksum = node.children.find((child) => child.name.startsWith("Checksum"));
-  return { number, etag: stripETag(etag), checksumValue: checksum?.text.trim() };
+  const checksums = CHECKSUM_ALGORITHMS.flatMap((algorithm): PartChecksum[] => {
+    const value = childText(node, checksumElement(algorithm));
+    return value ? [{ algorithm, value: value.trim() }] : [];
+  });
+  return { number, etag: stripETag(etag), checksum: checksums[0] };
 }
 
 /** DELETE ?uploadId: gives an upload up. */
