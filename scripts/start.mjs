@@ -16,14 +16,7 @@ import { lockNote, tryLock } from "./lib/locks.mjs";
 import { PlainError } from "./lib/plain-error.mjs";
 import { assertPortsFree, derivePorts } from "./lib/ports.mjs";
 import { endLeftovers } from "./lib/processes.mjs";
-import {
-  dataDirectoryOf,
-  localServices,
-  openSecrets,
-  reachable,
-  settings,
-  writeSecrets,
-} from "./lib/settings.mjs";
+import { dataDirectoryOf, localServices, openSecrets, reachable, settings } from "./lib/settings.mjs";
 import { ensureBuild, ensureNodePackages } from "./lib/source.mjs";
 
 /*
@@ -341,7 +334,7 @@ async function introduce({ here, environment, secrets, dataDirectory, local }) {
   say(`Data      ${dataDirectory}`);
   say("");
   if (secrets.mode === "studio") {
-    await introduceSetup({ here, base, secrets, dataDirectory });
+    await introduceSetup({ here, base, setupCode: secrets.setupCode });
   } else {
     const { DEMO_LOGINS } = await import("../db/seed/demo-logins.mjs");
     const width = (/** @type {"role" | "email"} */ key) =>
@@ -356,23 +349,14 @@ async function introduce({ here, environment, secrets, dataDirectory, local }) {
 }
 
 /**
- * Shows the one-time code while the set-up page takes it, and forgets it afterwards.
+ * Shows the one-time code as long as the set-up page takes it.
  *
- * @param {{
- *   here: string,
- *   base: string | undefined,
- *   secrets: import("./lib/settings.mjs").Secrets,
- *   dataDirectory: string,
- * }} instance
+ * @param {{ here: string, base: string | undefined, setupCode: string | null }} instance
  */
-async function introduceSetup({ here, base, secrets, dataDirectory }) {
-  if (secrets.setupCode === null) return;
+async function introduceSetup({ here, base, setupCode }) {
   const page = await fetch(`${here}/setup`, { redirect: "manual" });
-  if (page.ok) {
-    say(`Set up your studio at ${base}/setup with this code, which works once:`);
-    say(`  ${secrets.setupCode}`);
-    say("");
-  } else if (page.status < 500) {
-    writeSecrets(dataDirectory, { ...secrets, setupCode: null });
-  }
+  if (!page.ok || setupCode === null) return;
+  say(`Set up your studio at ${base}/setup with this code, which works once:`);
+  say(`  ${setupCode}`);
+  say("");
 }
