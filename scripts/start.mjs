@@ -206,11 +206,19 @@ async function start(args) {
   async function fillDatabase() {
     await run("migrate", script("scripts/migrate.ts"));
     if (secrets.mode === "studio" || !local.postgres) return;
-    if (readState(dataDirectory).demoData === "complete") return;
+    const { demoData } = readState(dataDirectory);
+    if (demoData === "rows" || demoData === "complete") return;
     rememberState(dataDirectory, { demoData: "begun" });
     say("making the demo data, once");
     await services;
-    await run("seed", script("scripts/seed.ts"), {}, (line) => say(`  ${line}`));
+    await run("seed", [...script("scripts/seed.ts"), "rows"], {}, (line) => say(`  ${line}`));
+    rememberState(dataDirectory, { demoData: "rows" });
+  }
+
+  /** The demo's scans are drawn while the shop is open; one that was stopped in the middle goes on. */
+  async function drawDemoScans() {
+    if (readState(dataDirectory).demoData !== "rows") return;
+    await run("demo-scans", [...script("scripts/seed.ts"), "scans"], {}, () => {});
     rememberState(dataDirectory, { demoData: "complete" });
   }
 
@@ -256,6 +264,9 @@ async function start(args) {
   const here = `http://${reachable(host)}:${ports.PORT}`;
   await answers(`${here}/readyz`, "web", () => !ended);
   await introduce({ here, environment, secrets, dataDirectory, local });
+  drawDemoScans().catch((error) => {
+    if (!ended) say(`the demo's scans were not all drawn: ${error instanceof Error ? error.message : error}`);
+  });
 }
 
 function assertNode() {

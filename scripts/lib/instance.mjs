@@ -9,7 +9,7 @@ import { writePrivateJson } from "./settings.mjs";
  *   ports?: import("./ports.mjs").Ports,
  *   host?: string,
  *   baseUrl?: string,
- *   demoData?: "begun" | "complete",
+ *   demoData?: "begun" | "rows" | "complete",
  * }} InstanceState
  */
 
