@@ -25,6 +25,9 @@ const PROJECT = path.dirname(path.dirname(fileURLToPath(import.meta.url)));
 const SHORT = ["lint", "types", "unit", "integration", "build", "e2e"];
 const LONG = ["long", "e2e-long"];
 
+/** Folders below the data folder that may hold a cluster: the shop's, and that of the integration tests. */
+const INSTANCES = ["shop", "."];
+
 /** A start with nothing to do, and a stop, may take this long. In ms. */
 const READY_WITHIN = 10_000;
 const STOPPED_WITHIN = 10_000;
@@ -40,6 +43,9 @@ const running = new Set();
 /** @type {{ name: string, passed: number, failed: number, notes: string[], seconds: number }[]} */
 const results = [];
 
+/** @type {Promise<string> | undefined} */
+let clusterUrl;
+
 for (const signal of /** @type {const} */ (["SIGINT", "SIGTERM", "SIGHUP"])) {
   process.on(signal, async () => {
     await stopAll();
@@ -54,6 +60,7 @@ try {
   results.push({ name: "set-up", passed: 0, failed: 1, notes: [], seconds: 0 });
 } finally {
   await stopAll();
+  for (const instance of INSTANCES) removeCluster(path.join(dataDirectory, instance, "pg"));
 }
 say("");
 for (const { name, passed, failed, notes, seconds } of results) {
@@ -133,7 +140,7 @@ async function forgetLastRun() {
       `The data folder of tests is emptied, so its name has to begin with .data-; "${dataDirectory}" does not.`,
     );
   }
-  for (const instance of ["shop", "."]) {
+  for (const instance of INSTANCES) {
     const directory = path.join(dataDirectory, instance);
     await endLeftovers(directory);
     await endLeftoverServer(path.join(directory, "pg"));
@@ -240,9 +247,6 @@ async function vitest(name, environment) {
   );
   results.push({ name, ...suiteResult(report, code, countVitest), seconds: (Date.now() - since) / 1_000 });
 }
-
-/** @type {Promise<string> | undefined} */
-let clusterUrl;
 
 /**
  * The cluster of the integration tests, started once.
