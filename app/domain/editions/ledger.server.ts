@@ -10,6 +10,7 @@ import {
 } from "db/schema/schema";
 import { and, desc, eq, inArray, lt, sql } from "drizzle-orm";
 import { now } from "~/platform/clock";
+import { AppError } from "~/platform/errors";
 import { newId, randomSecret, sha256 } from "~/platform/ids.server";
 import { canonicalJson, type LedgerJson } from "./canonical-json";
 import { isForSale, numberMark, type Run } from "./numbering";
@@ -59,10 +60,10 @@ export async function lockEditions(tx: Tx, ids: readonly string[]): Promise<Map<
   return new Map(rows.map((row) => [row.id, row as LockedEdition]));
 }
 
-/** Locks one edition; throws when it does not exist. */
+/** Locks one edition. Throws AppError `not_found`. */
 export async function lockEdition(tx: Tx, id: string): Promise<LockedEdition> {
   const edition = (await lockEditions(tx, [id])).get(id);
-  if (edition === undefined) throw new Error(`no edition ${id}`);
+  if (edition === undefined) throw new AppError("not_found", `no edition ${id}`);
   return edition;
 }
 

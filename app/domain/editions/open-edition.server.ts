@@ -1,4 +1,4 @@
-import { inTransaction, type Tx } from "db/client.server";
+import { type Database, inTransaction, type Tx } from "db/client.server";
 import { copies, editions, formats, papers, priceSteps, printPictures, prints } from "db/schema/schema";
 import { and, asc, eq, isNull } from "drizzle-orm";
 import { copiesOfPictures } from "~/domain/orders/for-sale.server";
@@ -32,7 +32,7 @@ export async function openEdition(
   return inTransaction(async (tx) => {
     const edition = await lockEdition(tx, editionId);
     if (edition.state !== "draft") return { kind: "already" };
-    const sentences = await problemsOf(tx, edition);
+    const sentences = await openingProblems(tx.db, edition);
     if (sentences.length > 0) return { kind: "problems", sentences };
     const total = await totalAfterOpening(tx, edition);
     if (total > CAP_OF_COPIES && !options.acceptPastCap)
@@ -98,19 +98,23 @@ async function publicFormats(tx: Tx, editionId: string) {
   }));
 }
 
-async function problemsOf(tx: Tx, edition: LockedEdition): Promise<string[]> {
+/** What keeps an edition from being opened, as sentences; an empty list when nothing does. */
+export async function openingProblems(
+  db: Database,
+  edition: typeof editions.$inferSelect,
+): Promise<string[]> {
   const sentences: string[] = [];
-  const [print] = await tx.db.select().from(prints).where(eq(prints.id, edition.printId));
-  const pictures = await tx.db.select().from(printPictures).where(eq(printPictures.printId, edition.printId));
+  const [print] = await db.select().from(prints).where(eq(prints.id, edition.printId));
+  const pictures = await db.select().from(printPictures).where(eq(printPictures.printId, edition.printId));
   if (print === undefined || pictures.length === 0) sentences.push("The print has no picture yet.");
-  const own = await tx.db
+  const own = await db
     .select()
     .from(formats)
     .where(eq(formats.editionId, edition.id))
     .orderBy(asc(formats.position));
   if (own.length === 0) sentences.push("The edition needs at least one format: paper, process and sizes.");
   for (const [index, format] of own.entries()) {
-    const steps = await tx.db
+    const steps = await db
       .select()
       .from(priceSteps)
       .where(and(eq(priceSteps.formatId, format.id), isNull(priceSteps.supersededAt)));
