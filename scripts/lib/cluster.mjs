@@ -110,6 +110,10 @@ export function openCluster({ baseDirectory, port, superuserPassword, durable, e
     "timezone=UTC",
     "log_timezone=UTC",
     "password_encryption=scram-sha-256",
+    // A violated constraint or a failing statement would otherwise bring names and addresses into the log.
+    "log_error_verbosity=terse",
+    "log_min_error_statement=panic",
+    "log_checkpoints=off",
     ...(durable ? [] : quick),
   ];
   return {
