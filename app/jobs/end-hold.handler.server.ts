@@ -1,6 +1,7 @@
 import { endHold } from "~/domain/orders/end-hold.server";
 import { endHoldJob } from "./end-hold.job";
+import { handle } from "./job";
 
-export async function handle(data: unknown): Promise<void> {
-  await endHold(endHoldJob.parse(data).orderId, "expired");
-}
+export const handler = handle(endHoldJob, async ({ orderId }) => {
+  await endHold(orderId, "expired");
+});

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { defineJob } from "./job";
 
 /** The time of an order's hold has come to its end. */
-export const endHoldJob = z.object({ orderId: z.string() });
+export const endHoldJob = defineJob("end-hold", z.object({ orderId: z.uuid() }));

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { defineJob } from "./job";
 
 /** An offered number has waited long enough. */
-export const lapseOffer = z.object({ offerId: z.string() });
+export const lapseOfferJob = defineJob("lapse-offer", z.object({ offerId: z.uuid() }));

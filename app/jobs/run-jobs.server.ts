@@ -15,8 +15,8 @@ const RUNNING = 7_025_003;
 const SWEEPING = 7_025_004;
 
 /** A job is taken from the queue some milliseconds before its lock is; younger ones are left alone. */
-const ORPHAN_AFTER_SECONDS = 10;
-const ORPHANS_EVERY_SECONDS = 15;
+const ORPHAN_AFTER_SECONDS = 5;
+const ORPHANS_EVERY_SECONDS = 5;
 
 export type Jobs = {
   /**
@@ -34,7 +34,7 @@ type Running = { queue: QueueName; id: string; done: Promise<void> };
  * Runs jobs until stopped: every queue by itself, but pictures one at a time, since one alone may take half a
  * gigabyte. While a job runs, this worker holds an advisory lock on its id, which ends with the process however
  * that ends; a job marked as running whose lock nobody holds belonged to a worker that was killed, and is given to
- * another one within half a minute instead of when it expires.
+ * another one within seconds instead of when it expires.
  */
 export async function runJobs({ handlers, sweeps, pollingSeconds = 0.5 }: Options): Promise<Jobs> {
   const boss = await startQueue({ works: true });

@@ -1,6 +1,7 @@
 import { sendRefund } from "~/domain/orders/refunds.server";
+import { handle } from "./job";
 import { sendRefundJob } from "./send-refund.job";
 
-export async function handle(data: unknown): Promise<void> {
-  await sendRefund(sendRefundJob.parse(data).refundId);
-}
+export const handler = handle(sendRefundJob, async ({ refundId }) => {
+  await sendRefund(refundId);
+});

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { defineJob } from "./job";
 
 /** Money that is to go back to a card. */
-export const sendRefundJob = z.object({ refundId: z.string() });
+export const sendRefundJob = defineJob("send-refund", z.object({ refundId: z.uuid() }));

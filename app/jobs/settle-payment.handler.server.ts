@@ -1,6 +1,7 @@
 import { settleSession } from "~/domain/orders/settle.server";
-import { settlePayment } from "./settle-payment.job";
+import { handle } from "./job";
+import { settlePaymentJob } from "./settle-payment.job";
 
-export async function handle(data: unknown): Promise<void> {
-  await settleSession(settlePayment.parse(data).stripeSessionId);
-}
+export const handler = handle(settlePaymentJob, async ({ stripeSessionId }) => {
+  await settleSession(stripeSessionId);
+});

@@ -1,3 +1,4 @@
+import { reconcileOpenOrders, reconcilePaidSessions } from "~/domain/orders/reconcile.server";
 import { findLostImaging, keepReleases, takeArrivedScans } from "~/domain/rolls/look-after-scans.server";
 
 /** Something looked after again and again, so that nothing rests on a job that was never made or was lost. */
@@ -9,6 +10,9 @@ export type Sweep = {
 };
 
 export const SWEEPS: readonly Sweep[] = [
+  { name: "open-orders", everySeconds: 60, run: reconcileOpenOrders },
+  { name: "payments-of-today", everySeconds: 60, run: () => reconcilePaidSessions(1) },
+  { name: "payments-of-the-month", everySeconds: 3_600, run: () => reconcilePaidSessions(30) },
   { name: "releases", everySeconds: 15, run: keepReleases },
   { name: "arrived-scans", everySeconds: 30, run: takeArrivedScans },
   { name: "lost-imaging", everySeconds: 60, run: findLostImaging },
