@@ -407,7 +407,7 @@ export const rolls: CatalogueRoll[] = [
         width: 3000,
         title: "Poplars, Pinhole",
         place: "Long Pound, Amberley",
-        note: "Nearer, and the gap where one came down last winter. 25 s metered, 68 given.",
+        note: "Nearer, and the gaps where they came down last winter. 25 s metered, 68 given.",
         exposure: { aperture: 192, timeSeconds: 68, light: "Overcast, an hour before dusk" },
       },
     ],
@@ -578,7 +578,7 @@ export const prints: CataloguePrint[] = [
     year: 2021,
     frames: [{ roll: 187, position: 11 }],
     crop: whole,
-    alt: "A weathered wooden landing stage runs straight out from the viewer over smooth grey water towards a thin far shore. Four posts stand at its sides; the evening sky is dark above and pale at the horizon.",
+    alt: "A weathered wooden landing stage runs straight out from the viewer over smooth grey water towards a thin far shore. Posts stand in pairs at its sides; the evening sky is dark above and pale at the horizon.",
     statement:
       "It was choppy. Four minutes of chop is flat. The boards are sharp because they were nailed down; everything else in the picture moved.",
     series: "low-water",
@@ -589,7 +589,7 @@ export const prints: CataloguePrint[] = [
     year: 2023,
     frames: [{ roll: 203, position: 9 }],
     crop: whole,
-    alt: "A four-storey brick mill with a tall chimney stands across a wide pond, doubled by its reflection. Mist lies along the waterline; streaked cloud fans out behind, and reeds rise at the lower corner.",
+    alt: "A four-storey brick mill with a stair tower and a tall chimney stands across a wide pond, doubled by its reflection. Mist lies along the waterline; streaked cloud fans out behind, and reeds rise at the lower corner.",
     statement:
       "It stopped in the year my mother left it. I have no photograph of it working. This is how it looks from the place where the hands ate their lunch.",
     series: "low-water",
@@ -665,7 +665,7 @@ export const prints: CataloguePrint[] = [
     title: "Thorn, Square",
     year: 2024,
     frames: [{ roll: 214, position: 5 }],
-    crop: { x: 0.23, y: 0, width: 2 / 3, height: 1 },
+    crop: { x: 0.16, y: 0, width: 2 / 3, height: 1 },
     alt: "The same wind-swept hawthorn, cut to a square: the tree in the middle on its dark brow, the streaked sky fanning out above it.",
     statement:
       "The same negative as the long one. I cut it square for a friend with a narrow wall and found I liked the tree better without the view.",
@@ -690,7 +690,7 @@ export const prints: CataloguePrint[] = [
     crop: whole,
     alt: "A wire fence climbs across an unmarked field of snow to a single broad, bare tree on the brow, under a plain grey sky.",
     statement:
-      "Snow leaves out most of a field. What is left here is nineteen posts and a tree. I walked round by the road so as not to add to it.",
+      "Snow leaves out most of a field. What is left here is a fence and a tree. I walked round by the road so as not to add to it.",
     series: "high-chalk",
   },
 ];
@@ -735,7 +735,7 @@ export const laterPrints: CataloguePrint[] = [
     year: 2023,
     frames: [{ roll: 209, position: 4 }],
     crop: whole,
-    alt: "Nine tall poplars on a dark bank, with a gap in the row, stand against a pale sky and are doubled, a little blurred, in the water below. The corners of the picture are dark.",
+    alt: "Nine tall poplars on a dark bank, with gaps in the row, stand against a pale sky and are doubled, a little blurred, in the water below. The corners of the picture are dark.",
     statement:
       "A pinhole is everywhere equally unsharp. After a while it stops looking unsharp and looks like weather.",
     series: "low-water",

@@ -3,13 +3,13 @@
 import { clamp, tile } from "./noise.mjs";
 
 export class Plate {
-  constructor(w, h, tone = 0) {
+  /** `px`, if given, is cleared and used instead of new memory. */
+  constructor(w, h, px = new Float32Array(w * h)) {
     this.w = w;
     this.h = h;
     this.A = w / h;
     this.air = 1; // how thick the mist is, 1 as the scene was drawn
-    this.px = new Float32Array(w * h);
-    if (tone) this.px.fill(tone);
+    this.px = px.fill(0);
   }
 
   /** Replace each pixel between rows y0 and y1 by fn(x, y, old). */
@@ -88,7 +88,7 @@ export class Plate {
     r1 *= h;
     const dx = x1 - x0,
       dy = y1 - y0,
-      len = Math.hypot(dx, dy);
+      len = Math.sqrt(dx * dx + dy * dy);
     if (len < 1e-6) return;
     const steep = Math.abs(dy) >= Math.abs(dx);
     // a runs along the major axis, b across it
@@ -173,8 +173,14 @@ export class Plate {
     const i0 = Math.max(0, Math.floor(Math.min(x0, x1) - m)),
       i1 = Math.min(w - 1, Math.ceil(Math.max(x0, x1) + m)),
       il = 1 / Math.sqrt(l2);
-    for (let j = j0; j <= j1; j++)
-      for (let i = i0; i <= i1; i++) {
+    const level = Math.abs(dy) < 0.2 * Math.abs(dx);
+    const reach = level ? 0 : (m * Math.sqrt(l2)) / Math.abs(dy);
+    for (let j = j0; j <= j1; j++) {
+      // unless it lies nearly flat, a row crosses only a short stretch of the box round the piece
+      const mid = level ? 0 : x0 + (dx * (j + 0.5 - y0)) / dy;
+      const from = level ? i0 : Math.max(i0, Math.floor(mid - reach) - 1);
+      const to = level ? i1 : Math.min(i1, Math.ceil(mid + reach));
+      for (let i = from; i <= to; i++) {
         const ax = i + 0.5 - x0,
           ay = j + 0.5 - y0,
           t = clamp((ax * dx + ay * dy) / l2),
@@ -188,6 +194,7 @@ export class Plate {
         const k = j * w + i;
         px[k] += (v - px[k]) * Math.min(c, 1);
       }
+    }
   }
 
   /** Upright limb through [x, y, r] points given from foot to top; shade(u, x, y, old) with u -1..1 across. */
@@ -253,8 +260,7 @@ export class Plate {
 
   /** Filled polygons with exact area coverage; tone is a number or fn(x, y, old). */
   poly(polys, tone, alpha = 1) {
-    const { w, h, px } = this,
-      W = w + 2;
+    const { w, h, px } = this;
     let top = h,
       bot = 0,
       left = w,
@@ -271,32 +277,45 @@ export class Plate {
     left = Math.max(0, Math.floor(left));
     right = Math.min(w, Math.ceil(right) + 1);
     if (bot <= top || right <= left) return;
-    const acc = new Float32Array(W * (bot - top) + 2);
-    for (const p of polys) {
+    // a band of rows at a time: the sums stay small whatever the size of the polygon
+    const width = right - left;
+    const W = width + 2;
+    const band = 64;
+    const acc = new Float32Array(W * Math.min(band, bot - top) + 2);
+    const fn = typeof tone === "function";
+    const s = 1 / h;
+    const turns = polys.map((p) => {
       let area = 0;
       for (let i = 0; i < p.length; i++) {
-        const a = p[i],
-          b = p[(i + 1) % p.length];
+        const a = p[i];
+        const b = p[(i + 1) % p.length];
         area += a[0] * b[1] - b[0] * a[1];
       }
-      const sgn = area < 0 ? -1 : 1;
-      for (let i = 0; i < p.length; i++) {
-        const a = p[i],
-          b = p[(i + 1) % p.length];
-        edge(acc, W, w, bot - top, a[0] * h, a[1] * h - top, b[0] * h, b[1] * h - top, sgn);
+      return area < 0 ? -1 : 1;
+    });
+    for (let from = top; from < bot; from += band) {
+      const rows = Math.min(band, bot - from);
+      if (from > top) acc.fill(0);
+      for (let n = 0; n < polys.length; n++) {
+        const p = polys[n];
+        for (let i = 0; i < p.length; i++) {
+          const a = p[i];
+          const b = p[(i + 1) % p.length];
+          const ya = a[1] * h - from;
+          const yb = b[1] * h - from;
+          if ((ya < 0 && yb < 0) || (ya > rows && yb > rows)) continue;
+          edge(acc, W, width, rows, a[0] * h - left, ya, b[0] * h - left, yb, turns[n]);
+        }
       }
-    }
-    const fn = typeof tone === "function",
-      s = 1 / h;
-    for (let j = top; j < bot; j++) {
-      let c = 0;
-      for (let i = 0, k = j * w, q = (j - top) * W; i < right; i++, k++, q++) {
-        c += acc[q];
-        if (i < left) continue;
-        const m = c < 0 ? -c : c;
-        if (m < 0.002) continue;
-        const v = fn ? tone((i + 0.5) * s, (j + 0.5) * s, px[k]) : tone;
-        px[k] += (v - px[k]) * Math.min(m, 1) * alpha;
+      for (let j = 0; j < rows; j++) {
+        let c = 0;
+        for (let i = 0, k = (from + j) * w + left, q = j * W; i < width; i++, k++, q++) {
+          c += acc[q];
+          const m = c < 0 ? -c : c;
+          if (m < 0.002) continue;
+          const v = fn ? tone((left + i + 0.5) * s, (from + j + 0.5) * s, px[k]) : tone;
+          px[k] += (v - px[k]) * Math.min(m, 1) * alpha;
+        }
       }
     }
   }
@@ -378,8 +397,17 @@ export class Plate {
     }
   }
 
-  blur(sigma) {
-    blur(this.px, this.w, this.h, sigma * this.h, sigma * this.h);
+  /** Throws the whole plate out of focus; sigma in picture heights. */
+  defocus(sigma) {
+    const { w, h, px } = this;
+    const { g, gw, k } = softened(px, w, h, (sigma * h) / 5, (f, fw, fh, k) =>
+      blur(f, fw, fh, (sigma * h) / k),
+    );
+    const row = new Float32Array(w);
+    for (let j = 0; j < h; j++) {
+      coarseRow(g, gw, k, j, row);
+      px.set(row, j * w);
+    }
   }
 }
 
@@ -510,6 +538,39 @@ export function shrink(px, w, h, k) {
     for (let I = 0; I < gw; I++) g[J * gw + I] /= (je - J * k) * (Math.min(w, (I + 1) * k) - I * k);
   }
   return { g, gw, gh };
+}
+
+/**
+ * The plate reduced by about `by`, treated there, and laid out with its samples at multiples of k, for coarseRow.
+ * treat(field, width, height, k) changes the reduced field in place.
+ */
+export function softened(px, w, h, by, treat) {
+  const k = Math.max(1, Math.round(by));
+  const { g: f, gw: fw, gh: fh } = shrink(px, w, h, k);
+  treat(f, fw, fh, k);
+  if (k === 1) {
+    // one more row and column, for the interpolation to lean on
+    const g = new Float32Array((fw + 2) * (fh + 2));
+    for (let j = 0; j < fh + 2; j++) {
+      const q = Math.min(j, fh - 1) * fw;
+      for (let i = 0; i < fw + 2; i++) g[j * (fw + 2) + i] = f[q + Math.min(i, fw - 1)];
+    }
+    return { g, gw: fw + 2, k };
+  }
+  const gw = fw + 2;
+  const gh = fh + 2;
+  const g = new Float32Array(gw * gh);
+  // the middle of a block lies half a block off the grid of samples
+  for (let j = 0; j < gh; j++) {
+    const a = clamp(j - 1, 0, fh - 1) * fw;
+    const b = Math.min(j, fh - 1) * fw;
+    for (let i = 0; i < gw; i++) {
+      const l = clamp(i - 1, 0, fw - 1);
+      const r = Math.min(i, fw - 1);
+      g[j * gw + i] = 0.25 * (f[a + l] + f[a + r] + f[b + l] + f[b + r]);
+    }
+  }
+  return { g, gw, k };
 }
 
 /** One row of a coarse field, `step` pixels to a cell, interpolated to full width into `row`. */

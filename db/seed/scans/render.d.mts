@@ -34,16 +34,15 @@ export type RenderJob = {
 };
 
 export type RenderedScan = {
-  /** one grey channel, 16 bit, encoded with a gamma of 2.2, row after row */
-  data: Uint16Array;
+  /** the whole file: 16-bit grey, uncompressed, Gray Gamma 2.2 profile */
+  tiff: Uint8Array<ArrayBuffer>;
+  /** its picture alone, row after row, encoded with a gamma of 2.2; shares the file's memory */
+  samples: Uint16Array<ArrayBuffer>;
   width: number;
   height: number;
   /** pixels per inch of film */
   dpi: number;
 };
 
-/** Draws one frame of film. The same job gives the same samples on the same version of Node. */
+/** Draws one frame of film. The same job gives the same bytes on the same version of Node. */
 export function render(job: RenderJob): RenderedScan;
-
-/** Baseline TIFF, uncompressed, with the Gray Gamma 2.2 profile. */
-export function encodeTiff(scan: RenderedScan): Uint8Array<ArrayBuffer>;

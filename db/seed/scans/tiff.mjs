@@ -57,8 +57,12 @@ const LONG = 4;
 const RATIONAL = 5;
 const UNDEFINED = 7;
 
-/** @param {import("./render.mjs").RenderedScan} scan */
-export function encodeTiff({ data, width, height, dpi }) {
+/**
+ * A file laid out and ready for its picture: header, directory and profile are written, and `samples` is the
+ * place in the file where the picture goes, row after row.
+ * @returns {{ file: Uint8Array<ArrayBuffer>, samples: Uint16Array<ArrayBuffer> }}
+ */
+export function layTiff(width, height, dpi) {
   const icc = grayGamma22();
   const rowsPerStrip = Math.max(1, Math.floor((1 << 20) / (width * 2)));
   const strips = Math.ceil(height / rowsPerStrip);
@@ -70,7 +74,8 @@ export function encodeTiff({ data, width, height, dpi }) {
   const counts = offsets + strips * 4;
   const profile = counts + strips * 4;
   const pixels = (profile + icc.length + 15) & ~15;
-  const file = new Uint8Array(pixels + data.byteLength);
+  const length = width * height * 2;
+  const file = new Uint8Array(pixels + length);
   const view = new DataView(file.buffer);
   file.set([0x49, 0x49, 42, 0], 0);
   view.setUint32(4, ifd, true);
@@ -92,7 +97,7 @@ export function encodeTiff({ data, width, height, dpi }) {
     [273, LONG, strips, one ? pixels : offsets],
     [277, SHORT, 1, 1],
     [278, LONG, 1, rowsPerStrip],
-    [279, LONG, strips, one ? data.byteLength : counts],
+    [279, LONG, strips, one ? length : counts],
     [282, RATIONAL, 1, resolution],
     [283, RATIONAL, 1, resolution],
     [296, SHORT, 1, 2],
@@ -107,7 +112,6 @@ export function encodeTiff({ data, width, height, dpi }) {
     if (type === SHORT) view.setUint16(p + 8, value, true);
     else view.setUint32(p + 8, value, true);
   });
-  // the samples are little-endian like the file: copied as they lie in memory
-  file.set(new Uint8Array(data.buffer, data.byteOffset, data.byteLength), pixels);
-  return file;
+  // the file is little-endian, as is every machine Node runs on that has been tried here
+  return { file, samples: new Uint16Array(file.buffer, pixels, width * height) };
 }

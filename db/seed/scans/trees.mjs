@@ -68,30 +68,49 @@ export function growTree({
   twigLen = 0.05,
   wobble = 0.16,
 }) {
-  const key = JSON.stringify([seed, crown, points, trunk, lean, step, kill, pull, tip, pipe, twigs, twigLen]);
+  // everything the tree depends on: a frame must not depend on which frames were drawn before it
+  const key = JSON.stringify([
+    seed,
+    crown,
+    points,
+    trunk,
+    lean,
+    step,
+    kill,
+    reach,
+    pull,
+    tip,
+    pipe,
+    twigs,
+    twigLen,
+    wobble,
+  ]);
   if (cache.has(key)) return cache.get(key);
-  const r = rng(seed * 7919 + 13),
-    X = [0],
-    Y = [0],
-    Z = [0],
-    P = [-1];
-  let vx = lean,
-    vz = 0;
-  while (Y[Y.length - 1] < trunk) {
+  const r = rng(seed * 7919 + 13);
+  const most = 9600;
+  const X = new Float64Array(most);
+  const Y = new Float64Array(most);
+  const Z = new Float64Array(most);
+  const P = new Int32Array(most);
+  P[0] = -1;
+  let n = 1;
+  let vx = lean;
+  let vz = 0;
+  while (Y[n - 1] < trunk) {
     vx += r.range(-1, 1) * wobble * 0.22 + (lean - vx) * 0.1;
     vz += r.range(-1, 1) * wobble * 0.22 - vz * 0.1;
-    const i = X.length - 1,
-      l = step / Math.hypot(vx, 1, vz);
-    X.push(X[i] + vx * l);
-    Y.push(Y[i] + l);
-    Z.push(Z[i] + vz * l);
-    P.push(i);
+    const l = step / Math.sqrt(vx * vx + 1 + vz * vz);
+    X[n] = X[n - 1] + vx * l;
+    Y[n] = Y[n - 1] + l;
+    Z[n] = Z[n - 1] + vz * l;
+    P[n] = n - 1;
+    n++;
   }
-  const ax = [],
-    ay = [],
-    az = [],
-    near = [],
-    nd = [];
+  const ax = new Float64Array(points);
+  const ay = new Float64Array(points);
+  const az = new Float64Array(points);
+  const near = new Int32Array(points);
+  const nd = new Float64Array(points).fill(Infinity);
   // lumps and gaps: no crown is a clean ellipsoid
   const lumps =
     LUMPS[crown] && Array.from({ length: LUMPS[crown] }, () => [...CROWNS[crown](r), r.range(0.1, 0.21)]);
@@ -100,120 +119,167 @@ export function growTree({
   for (let i = 0; i < points; i++) {
     let p = CROWNS[crown](r);
     for (let k = 0; k < 12 && !inLump(p); k++) p = CROWNS[crown](r);
-    ax.push(p[0] + lean * 0.3);
-    ay.push(p[1]);
-    az.push(p[2]);
-    near.push(0);
-    nd.push(Infinity);
+    ax[i] = p[0] + lean * 0.3;
+    ay[i] = p[1];
+    az[i] = p[2];
   }
-  const alive = new Uint8Array(points).fill(1);
-  const kids = new Map();
+  // points still to be reached, kept close together
+  const left = Int32Array.from({ length: points }, (_, a) => a);
+  let waiting = points;
+  const kids = new Int32Array(most * 3).fill(-1);
+  const sx = new Float64Array(most);
+  const sy = new Float64Array(most);
+  const sz = new Float64Array(most);
+  const drawn = new Int32Array(most);
+  const full = new Uint8Array(most);
   let from = 0;
-  for (let round = 0; round < 160; round++) {
-    for (let a = 0; a < points; a++) {
-      if (!alive[a]) continue;
-      for (let i = from; i < X.length; i++) {
-        const d = (X[i] - ax[a]) ** 2 + (Y[i] - ay[a]) ** 2 + (Z[i] - az[a]) ** 2;
-        if (d < nd[a]) {
-          nd[a] = d;
+  for (let round = 1; round <= 160; round++) {
+    let kept = 0;
+    for (let m = 0; m < waiting; m++) {
+      const a = left[m];
+      const px = ax[a];
+      const py = ay[a];
+      const pz = az[a];
+      let best = nd[a];
+      for (let i = from; i < n; i++) {
+        const dx = X[i] - px;
+        const dy = Y[i] - py;
+        const dz = Z[i] - pz;
+        const d = dx * dx + dy * dy + dz * dz;
+        if (d < best) {
+          best = d;
           near[a] = i;
         }
       }
-      if (nd[a] < kill * kill) alive[a] = 0;
+      nd[a] = best;
+      if (best >= kill * kill) left[kept++] = a;
     }
-    from = X.length;
-    const full = new Set(),
-      pullOf = new Map(),
-      lim = round < 12 ? 9 : reach * reach;
-    for (let a = 0; a < points; a++) {
-      if (!alive[a] || nd[a] > lim) continue;
-      const i = near[a],
-        l = Math.sqrt(nd[a]) || 1;
-      let s = pullOf.get(i);
-      if (!s) {
-        s = [0, 0, 0];
-        pullOf.set(i, s);
+    waiting = kept;
+    from = n;
+    const lim = round <= 12 ? 9 : reach * reach;
+    const pulled = [];
+    for (let m = 0; m < waiting; m++) {
+      const a = left[m];
+      if (nd[a] > lim) continue;
+      const i = near[a];
+      const l = Math.sqrt(nd[a]) || 1;
+      if (drawn[i] !== round) {
+        drawn[i] = round;
+        pulled.push(i);
+        sx[i] = sy[i] = sz[i] = 0;
       }
-      s[0] += (ax[a] - X[i]) / l;
-      s[1] += (ay[a] - Y[i]) / l;
-      s[2] += (az[a] - Z[i]) / l;
+      sx[i] += (ax[a] - X[i]) / l;
+      sy[i] += (ay[a] - Y[i]) / l;
+      sz[i] += (az[a] - Z[i]) / l;
     }
-    if (!pullOf.size) break;
-    const before = X.length;
-    for (const [i, s] of pullOf) {
-      let l = Math.hypot(...s) || 1;
+    if (!pulled.length) break;
+    const before = n;
+    let stuck = false;
+    for (const i of pulled) {
+      let l = Math.sqrt(sx[i] * sx[i] + sy[i] * sy[i] + sz[i] * sz[i]) || 1;
       // keep some of the parent's heading so that limbs sweep instead of kinking
-      const p = P[i],
-        q = p >= 0 ? 0.45 / step : 0;
-      const dx = s[0] / l + pull[0] + (p >= 0 ? (X[i] - X[p]) * q : 0) + r.range(-1, 1) * wobble;
-      const dy = s[1] / l + pull[1] + (p >= 0 ? (Y[i] - Y[p]) * q : 0) + r.range(-1, 1) * wobble;
-      const dz = s[2] / l + pull[2] + (p >= 0 ? (Z[i] - Z[p]) * q : 0) + r.range(-1, 1) * wobble;
-      l = step / (Math.hypot(dx, dy, dz) || 1);
-      const x = X[i] + dx * l,
-        y = Y[i] + dy * l,
-        z = Z[i] + dz * l,
-        k = kids.get(i) ?? [];
+      const p = P[i];
+      const q = p >= 0 ? 0.45 / step : 0;
+      const dx = sx[i] / l + pull[0] + (p >= 0 ? (X[i] - X[p]) * q : 0) + r.range(-1, 1) * wobble;
+      const dy = sy[i] / l + pull[1] + (p >= 0 ? (Y[i] - Y[p]) * q : 0) + r.range(-1, 1) * wobble;
+      const dz = sz[i] / l + pull[2] + (p >= 0 ? (Z[i] - Z[p]) * q : 0) + r.range(-1, 1) * wobble;
+      l = step / (Math.sqrt(dx * dx + dy * dy + dz * dz) || 1);
+      const x = X[i] + dx * l;
+      const y = Y[i] + dy * l;
+      const z = Z[i] + dz * l;
       // a node forks at most three ways, and never twice the same way
-      if (
-        k.length > 2 ||
-        k.some((j) => (X[j] - x) ** 2 + (Y[j] - y) ** 2 + (Z[j] - z) ** 2 < step * step * 0.3)
-      ) {
-        full.add(i);
+      let slot = 0;
+      let crowded = false;
+      for (; slot < 3 && kids[i * 3 + slot] >= 0; slot++) {
+        const j = kids[i * 3 + slot];
+        if ((X[j] - x) ** 2 + (Y[j] - y) ** 2 + (Z[j] - z) ** 2 < step * step * 0.3) crowded = true;
+      }
+      if (crowded || slot > 2 || n >= most) {
+        full[i] = 1;
+        stuck = true;
         continue;
       }
-      k.push(X.length);
-      kids.set(i, k);
-      X.push(x);
-      Y.push(y);
-      Z.push(z);
-      P.push(i);
+      kids[i * 3 + slot] = n;
+      X[n] = x;
+      Y[n] = y;
+      Z[n] = z;
+      P[n] = i;
+      n++;
     }
-    for (let a = 0; a < points; a++) if (alive[a] && full.has(near[a])) alive[a] = 0;
-    if (X.length === before && !full.size) break;
-    if (X.length > 9000) break;
+    if (stuck) {
+      kept = 0;
+      for (let m = 0; m < waiting; m++) if (!full[near[left[m]]]) left[kept++] = left[m];
+      waiting = kept;
+      full.fill(0, 0, n);
+    }
+    if (n === before && !stuck) break;
+    if (n > 9000) break;
   }
-  const n = X.length,
-    area = new Float64Array(n),
-    t = tip ** pipe;
+  const area = new Float64Array(n);
+  const end = tip ** pipe;
   for (let i = n - 1; i > 0; i--) {
-    if (area[i] === 0) area[i] = t;
+    if (area[i] === 0) area[i] = end;
     area[P[i]] += area[i];
   }
-  const rad = (i) => area[i] ** (1 / pipe),
-    out = [];
+  const rad = area.map((v) => v ** (1 / pipe));
+  const flare = (k) => 1 + 0.6 * Math.exp(-Y[k] / 0.03);
+  const out = new Pieces();
   for (let i = 1; i < n; i++) {
-    const p = P[i],
-      flare = (k) => 1 + 0.6 * Math.exp(-Y[k] / 0.03);
+    const p = P[i];
     // a child leaves a much thicker parent at its own thickness
-    const rp = Math.min(rad(p), rad(i) * 1.25);
-    out.push([X[p], Y[p], X[i], Y[i], rp * flare(p), rad(i) * flare(i), Z[i]]);
-    if (rad(i) < tip * 3.2 && twigs > 0) {
-      const hx = X[i] - X[p],
-        hy = Y[i] - Y[p],
-        count = r.next() < twigs % 1 ? Math.ceil(twigs) : Math.floor(twigs);
-      const base = Math.atan2(hy, hx);
-      for (let c = 0; c < count; c++)
-        sprig(
-          out,
-          r,
-          X[i],
-          Y[i],
-          base + r.range(-1.1, 1.1),
-          twigLen * r.range(0.4, 1.2),
-          tip * 0.72,
-          Z[i],
-          0,
-        );
+    const rp = Math.min(rad[p], rad[i] * 1.25);
+    out.push(X[p], Y[p], X[i], Y[i], rp * flare(p), rad[i] * flare(i), Z[i]);
+    if (rad[i] < tip * 3.2 && twigs > 0) {
+      const count = r.next() < twigs % 1 ? Math.ceil(twigs) : Math.floor(twigs);
+      const base = Math.atan2(Y[i] - Y[p], X[i] - X[p]);
+      for (let c = 0; c < count; c++) {
+        const a = base + r.range(-1.1, 1.1);
+        sprig(out, r, X[i], Y[i], a, twigLen * r.range(0.4, 1.2), tip * 0.72, Z[i], 0);
+      }
     }
   }
-  out.sort((a, b) => b[4] - a[4]);
-  const seg = new Float32Array(out.length * 7);
-  for (const [i, s] of out.entries()) seg.set(s, i * 7);
-  let top = 0;
-  for (const s of out) top = Math.max(top, s[3]);
-  const tree = { n: out.length, seg, top };
+  const tree = out.thickestFirst();
   cache.set(key, tree);
   return tree;
+}
+
+/** Pieces of a tree as they are made, seven numbers each. */
+class Pieces {
+  n = 0;
+  d = new Float32Array(7 * 16384);
+
+  push(x0, y0, x1, y1, r0, r1, z) {
+    let k = this.n++ * 7;
+    if (k + 7 > this.d.length) {
+      const more = new Float32Array(this.d.length * 2);
+      more.set(this.d);
+      this.d = more;
+    }
+    const d = this.d;
+    d[k++] = x0;
+    d[k++] = y0;
+    d[k++] = x1;
+    d[k++] = y1;
+    d[k++] = r0;
+    d[k++] = r1;
+    d[k] = z;
+  }
+
+  thickestFirst() {
+    const { n, d } = this;
+    // the order of equal pieces is that of their making: sorted as whole numbers, thickness above place
+    const keys = new Float64Array(n);
+    for (let i = 0; i < n; i++) keys[i] = -Math.round(d[i * 7 + 4] * 1e7) * 1048576 + i;
+    keys.sort();
+    const seg = new Float32Array(n * 7);
+    let top = 0;
+    for (let i = 0; i < n; i++) {
+      const k = (((keys[i] % 1048576) + 1048576) % 1048576) * 7;
+      for (let m = 0; m < 7; m++) seg[i * 7 + m] = d[k + m];
+      top = Math.max(top, d[k + 3]);
+    }
+    return { n, seg, top };
+  }
 }
 
 function sprig(out, r, x, y, a, len, rad, z, depth) {
@@ -223,7 +289,7 @@ function sprig(out, r, x, y, a, len, rad, z, depth) {
     const l = len / n,
       nx = x + Math.cos(a) * l,
       ny = y + Math.sin(a) * l;
-    out.push([x, y, nx, ny, rad, rad * 0.8, z]);
+    out.push(x, y, nx, ny, rad, rad * 0.8, z);
     x = nx;
     y = ny;
     rad *= 0.8;
@@ -279,7 +345,7 @@ export function drawTree(
     if (seg[k + 1] < 0.03) p.stroke(x0, y0, x1, y1, r0, r1, t, t, alpha, wide ? lut : null);
     else p.branch(x0, y0, x1, y1, r0, r1, t, alpha, wide ? lut : null);
     if (frost > 0) {
-      const up = Math.abs(bx - ax) / (Math.hypot(bx - ax, by - ay) + 1e-9),
+      const up = Math.abs(bx - ax) / (Math.sqrt((bx - ax) ** 2 + (by - ay) ** 2) + 1e-9),
         w = Math.min(r0, size * 0.0016) + 0.00007;
       if (wide && up < 0.35) continue;
       p.stroke(

@@ -139,7 +139,7 @@ export const bridge = {
       const dx = x - cx,
         dy = yw - y,
         a = Math.atan2(dy, dx),
-        q = Math.hypot(dx, dy),
+        q = Math.sqrt(dx * dx + dy * dy),
         t = clamp((R - q) / (R - fr)),
         z = t / (1.02 - t * 0.75);
       const caustic = 1 + 0.5 * smooth(0.3, 1.6, c.at(a * 0.9 + 0.3, z * 0.2)) * Math.abs(Math.cos(a));
@@ -152,7 +152,7 @@ export const bridge = {
     });
     const damp = (x, y) => mix(1, 0.35, smooth(0.09, 0, yw - y + 0.02 * c.at(x * 0.7, 0.2)));
     p.poly([outer], (x, y) => {
-      const d = Math.hypot(x - cx, y - yw),
+      const d = Math.sqrt((x - cx) ** 2 + (y - yw) ** 2),
         stain = Math.exp(0.42 * n.at(x * 0.35 + 0.2, y * 0.2) + 0.22 * c.at(x * 1.4, y * 0.18));
       const out = smooth(R + 0.034 - px, R + 0.034 + px, d),
         a = Math.atan2(yw - y, x - cx),

@@ -12,12 +12,12 @@ export function sky(
     q = r.next();
   p.wash(
     (x, y) => {
-      const d = Math.hypot((x - gx * p.A) * 0.7, y - gy) / size;
+      const d = Math.sqrt(((x - gx * p.A) * 0.7) ** 2 + (y - gy) ** 2) / size;
       const c = 1 + cloud * (n.at(x * 0.16 + o, y * 0.4 + q) + 0.5 * n.at(x * 0.4 + q, y * 1.1 + o));
       return (mix(top, low, smooth(0, at, y)) + glow * Math.exp(-d * d)) * c;
     },
     "set",
-    8,
+    16,
     0,
     to,
   );
@@ -57,7 +57,7 @@ export function streaks(
       return k > 0 ? 1 + k : 1 / (1 - k * dark * 2);
     },
     "multiply",
-    4,
+    6,
     0,
     to,
   );
@@ -88,7 +88,7 @@ export function clouds(
       return 1 + body * mix(-dark, light, lit);
     },
     "multiply",
-    3,
+    4,
     0,
     to,
   );
@@ -114,7 +114,7 @@ export function mist(p, r, { tone, amount, rough = 0.25, y0 = 0, y1 = 1, scale =
           );
     },
     "veil",
-    4,
+    8,
     y0,
     y1,
     tone,

@@ -161,6 +161,7 @@ export const ridges = {
       const toneAt = (x) => dark * (1 + 0.5 * near(x) * (1 - t)),
         sz = mix(0.007, 0.034, t ** 1.6),
         f2 = tile("fine");
+      const column = Float32Array.from({ length: p.w }, (_, k) => toneAt(k / p.h));
       if (i > 0) {
         const skyline = (x) => top(x) + 0.0012;
         for (let k = 0; k < 4; k++) {
@@ -181,7 +182,7 @@ export const ridges = {
       p.hill(
         top,
         (x, _y, d) =>
-          toneAt(x) *
+          column[(x * p.h) | 0] *
           Math.exp(
             (0.1 + 0.22 * t) * (c.at(x * 0.3 + q, d * 1.6 + q) * 0.7 + 0.5 * f2.at(x * 0.9, d * 3.2 + q)),
           ) *
@@ -416,7 +417,7 @@ export const furrows = {
         X = (x - vx) * z,
         w = X * 10.5 + 0.35 * n.at(X * 0.05 + o, z * 0.03) + 0.07 * c.at(X * 0.3, z * 0.2 + o);
       // furrows closer than the film can part melt into one tone, along the rows as well as across
-      const per = px / (z * 10.5 * Math.hypot(1, (x - vx) / d)),
+      const per = px / (z * 10.5 * Math.sqrt(1 + ((x - vx) / d) ** 2)),
         keep = smooth(2.4, 8, per),
         ph = w - Math.floor(w),
         k = Math.floor(w);

@@ -1,6 +1,5 @@
 // Roads, lamps, stones.
 import { clamp, mix, smooth, tile } from "../noise.mjs";
-import { blur } from "../plate.mjs";
 import { drawTree, grassEdge, growTree, treeLine } from "../trees.mjs";
 import { groundNoise, mist, sky } from "./common.mjs";
 
@@ -176,7 +175,7 @@ export const milestone = {
       y1: 0.7,
     });
     grassEdge(p, r, () => 0.62, { n: 7000, len: 0.05, tone: [0.03, 0.35], drop: 0.2, width: 0.0012 });
-    blur(p.px, p.w, p.h, p.h * 0.0085);
+    p.defocus(0.0085);
     // the stone
     const cx = A * r.range(0.57, 0.65),
       w = 0.185,
@@ -280,7 +279,7 @@ export const milestone = {
       // round the shoulders so that light turns round the stone
       const nx = -sx * 0.5 + 0.75 * Math.sign(u) * smooth(0.86, 1, Math.abs(u)),
         ny = -sy * 0.5 - 0.8 * smooth(0.35, 0, v),
-        l = 1 / Math.hypot(nx, ny, 1);
+        l = 1 / Math.sqrt(nx * nx + ny * ny + 1);
       const lit = Math.max(0, (-nx * 0.62 - ny * 0.5 + 0.6) * l);
       const lich =
           (inCuts(x, y) ? smooth(0.03, 0.06, groove(x, y)) : 1) *

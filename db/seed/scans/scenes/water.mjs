@@ -60,29 +60,34 @@ export const flood = {
     }
     posts.reverse();
     const light = limbLight(gx < 0.5 ? -1 : 1, 0.35, 0.5);
+    const fine = tile("fine");
     const post = (q, _k, up) => {
       const fog = mix(0.5, 0.018, smooth(0.08, 0.5, q.s)),
         dy = up ? -q.hgt : q.hgt * 0.92,
         tx = q.x + q.tilt * q.hgt;
       if (up) {
-        p.stroke(q.x, q.y, tx, q.y + dy, q.w, q.w * 0.94, fog * 1.5, fog * 1.5, 1, light);
-        for (let i = 0; i < 26 * q.s + 3; i++) {
-          const a = r.next(),
-            u = r.range(-0.8, 0.8),
-            l = r.range(0.04, 0.25) * dy;
-          p.stroke(
-            mix(q.x, tx, a) + u * q.w,
-            q.y + dy * a * 0.8,
-            mix(q.x, tx, a) + u * q.w,
-            q.y + dy * a * 0.8 + l * 0.7,
-            q.w * 0.05,
-            q.w * 0.03,
-            fog * r.pick([0.4, 2.4]),
-            undefined,
-            0.5,
+        // split and weathered: grain runs up it, and one side has the light
+        const k0 = r.next();
+        const upright = [
+          [q.x, q.y, q.w],
+          [mix(q.x, tx, 0.5) + r.gauss() * q.w * 0.06, q.y + dy * 0.5, q.w * r.range(0.95, 1.02)],
+          [tx, q.y + dy, q.w * 0.94],
+        ];
+        p.limb(upright, (u, X, y) => {
+          const round = Math.asin(u) * 0.5;
+          const up = (q.y - y) / q.hgt;
+          const grain =
+            0.5 * fine.at(round * 0.16 + k0, up * 0.1) +
+            0.4 * fine.at(round * 0.42 + k0, up * 0.28 + k0) +
+            0.3 * c.at(round * 0.3 + X * 0.1, up * 0.5 + k0);
+          const wet = mix(0.45, 1, smooth(0.05, 0.3, up + 0.05 * c.at(round * 0.4, k0)));
+          return mix(
+            fog,
+            fog * 1.6 * light[((u + 1) * 16) | 0] * Math.exp(0.75 * grain) * wet,
+            smooth(0.1, 0.5, q.s),
           );
-        }
-        p.dab(tx, q.y + dy, q.w * 0.94, q.w * 0.3, fog * 2.6, 0.8);
+        });
+        p.dab(tx, q.y + dy, q.w * 0.94, q.w * 0.24, fog * 2.2, 0.8, 0.2);
       } else {
         const pts = [
           [tx + 0.002, Math.min(1.1, q.y + dy * 1.25), q.w * 1.15],

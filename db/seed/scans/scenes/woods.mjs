@@ -51,9 +51,13 @@ function wood(p, r, long) {
     f = tile("fine"),
     o = r.next();
   const fw = long ? 0.62 : 0.36;
-  const fog = (x, y) =>
-    0.42 + 0.72 * Math.exp(-(((x - gx) / fw) ** 2) - ((y - gy) / (long ? 0.75 : 0.4)) ** 2);
-  p.wash((x, y) => fog(x, y) * (1 + 0.06 * n.at(x * 0.3 + o, y * 0.3)), "set", 8);
+  // brightest at one place; looked up, for it is asked of every pixel of every trunk
+  const fh = long ? 0.75 : 0.4;
+  const across = Float32Array.from({ length: 2048 }, (_, i) => Math.exp(-(((i / 1024 - gx) / fw) ** 2)));
+  const down = Float32Array.from({ length: 2048 }, (_, i) => Math.exp(-(((i / 1024 - gy) / fh) ** 2)));
+  const step = (v) => Math.max(0, Math.min(2047, v * 1024)) | 0;
+  const fog = (x, y) => 0.42 + 0.72 * across[step(x)] * down[step(y)];
+  p.wash((x, y) => fog(x, y) * (1 + 0.06 * n.at(x * 0.3 + o, y * 0.3)), "set", 12);
   const leafTone = (x, _y, e) =>
     mix(fog(x, yh), r.pick([0.012, 0.03, 0.06, 0.11, 0.2]) * (0.5 + fog(x, gy)), clamp(e));
   if (!long) {
@@ -102,21 +106,29 @@ function wood(p, r, long) {
           (1 + 0.22 * Math.exp(-(base - y) / (w * 4)) + 0.34 * Math.exp(-(base - y) / (w * 0.9))),
       ]);
     }
-    const skin = clamp(w * 60, 0, 1);
+    // across the trunk: the turn of the surface and the light on it
+    const turn = new Float32Array(513);
+    const lit = new Float32Array(513);
+    for (let i = 0; i < 513; i++) {
+      const u = (i - 256) / 256;
+      turn[i] = Math.asin(u) * w * 9;
+      lit[i] = mix(1, 0.22 + 0.95 * Math.max(0, u * side * 0.75 + Math.sqrt(1 - u * u) * 0.4), e);
+    }
+    const close = w > 0.008;
     p.limb(pts, (u, X, y) => {
-      const air = fog(X, y) * 0.86,
-        uw = Math.asin(u) * w * 9,
-        lt = mix(1, 0.22 + 0.95 * Math.max(0, u * side * 0.75 + Math.sqrt(1 - u * u) * 0.4), e);
+      const at = ((u + 1) * 256) | 0;
+      const uw = turn[at];
       // smooth bark: slow blotches of lichen, damp runs down it, fine rings across it
-      const tex =
-        skin > 0.3
-          ? 0.5 * c.at(uw * 0.4 + k, y * 0.7 + k) +
-            0.32 * c.at(uw * 1.5 + k, y * 0.16) +
-            0.26 * f.at(uw * 0.35 + k, y * 2.6) +
-            0.2 * f.at(uw * 2.2, y * 2.2 + k)
-          : 0.3 * c.at(uw + k, y * 0.4);
+      const tex = close
+        ? 0.5 * c.at(uw * 0.4 + k, y * 0.7 + k) +
+          0.32 * c.at(uw * 1.5 + k, y * 0.16) +
+          0.26 * f.at(uw * 0.35 + k, y * 2.6) +
+          0.2 * f.at(uw * 2.2, y * 2.2 + k)
+        : 0.4 * c.at(uw + k, y * 0.4);
       const foot = 1 - 0.45 * Math.exp(-(base - y) / (w * 2.2));
-      return mix(air, 0.03 * lt * foot * Math.exp(tex * 0.8), e) * (1 - 0.1 * (1 - e) * u * side * -1);
+      return (
+        mix(fog(X, y) * 0.86, 0.03 * lit[at] * foot * Math.exp(tex * 0.8), e) * (1 + 0.1 * (1 - e) * u * side)
+      );
     });
     const bark = tone * mix(1, 0.85, e);
     // the foot spreads into roots and is buried in litter
