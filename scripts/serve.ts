@@ -26,7 +26,8 @@ const app = createWeb({
   logger,
   handler: createRequestHandler({
     // Forms come from the address buyers use, also where a proxy asks us under another name without saying so.
-    build: { ...build, allowedActionOrigins: [new URL(env.BASE_URL).host] },
+    // "null" comes from pages that send no referrer; our own middleware decides about it.
+    build: { ...build, allowedActionOrigins: [new URL(env.BASE_URL).host, "null"] },
     mode: env.NODE_ENV,
     getLoadContext: () => new RouterContextProvider(),
   }),

@@ -47,7 +47,7 @@ async function heldForm(asked: Asked): Promise<HeldForm | null> {
 async function signInFirst(asked: Asked): Promise<unknown> {
   const { request, url, params } = asked;
   if (request.method === "GET" || request.method === "HEAD") {
-    const lang = params["lang"] === "de" ? "de" : undefined;
+    const lang = params.lang === "de" ? "de" : undefined;
     return redirect(
       `${href("/:lang?/sign-in", { lang })}?next=${encodeURIComponent(url.pathname + url.search)}`,
     );

@@ -8,13 +8,16 @@ const SIGNED_CALLERS = ["/hooks/"];
 
 /**
  * Whether a request that changes state comes from a page of ours. Browsers send Origin with every such request;
- * one that names another host, or `null`, is refused, and so is a cross-site one without Origin. The host is
+ * one that names another host is refused, `null` unless the browser says that it comes from us, and so is a cross-site
+ * one without Origin. The host is
  * compared, not the scheme: behind a TLS proxy we are asked over plain HTTP.
  */
 export function comesFromOurPages(request: Request): boolean {
   const origin = request.headers.get("origin");
   const site = request.headers.get("sec-fetch-site");
   if (origin === null) return site === null || site === "same-origin" || site === "none";
+  // A page that sends no referrer (order links, one-time links) sends `null` with its own forms, too.
+  if (origin === "null") return site === "same-origin";
   if (!URL.canParse(origin)) return false;
   const host = new URL(origin).host;
   const ours = new Set([new URL(env.BASE_URL).host, request.headers.get("host") ?? ""]);

@@ -1,6 +1,10 @@
 import { pool } from "db/client.server";
 import { RateLimiterPostgres, RateLimiterRes } from "rate-limiter-flexible";
+import { data } from "react-router";
+import type { Language } from "~/languages/language";
+import { count, fill, messagesOf } from "~/languages/messages";
 import { AppError } from "~/platform/errors";
+import type { Answers, FormProblem } from "~/platform/form-fields";
 import { sha256 } from "~/platform/ids.server";
 import { networkOf } from "./network";
 
@@ -81,4 +85,31 @@ export async function limitRequests(kind: LimitKind, keys: readonly string[]): P
       await Promise.all(counted.map(({ by, key }) => by.reward(key)));
     },
   };
+}
+
+/**
+ * The same for an action whose page can say how long to wait, with what was typed kept:
+ *
+ * ```ts
+ * const limit = await limitOrWait("reset", [clientIp, form.value.email], language);
+ * if (!limit.ok) return limit.problem(form);
+ * ```
+ */
+export async function limitOrWait(kind: LimitKind, keys: readonly string[], language: Language) {
+  try {
+    return { ok: true, ...(await limitRequests(kind, keys)) } as const;
+  } catch (error) {
+    if (!(error instanceof AppError) || error.code !== "too_many") throw error;
+    const seconds = error.data.retryAfter ?? 60;
+    const words = messagesOf(language).account.signIn;
+    const minutes = count(language, words.minutes, Math.ceil(seconds / 60));
+    const problem = (form: { answers: Answers }) => {
+      const said: FormProblem = {
+        errors: { form: [fill(words.tooMany, { minutes })] },
+        answers: form.answers,
+      };
+      return data({ problem: said }, { status: 429, headers: { "Retry-After": String(seconds) } });
+    };
+    return { ok: false, problem } as const;
+  }
 }

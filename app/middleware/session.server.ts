@@ -48,7 +48,7 @@ export const sessionMiddleware: MiddlewareFunction<Response> = async (
   { request, context, params, url },
   next,
 ) => {
-  context.set(languageContext, languageOfSegment(params["lang"]) ?? "en");
+  context.set(languageContext, languageOfSegment(params.lang) ?? "en");
   const secret = NOBODY_IN_PARTICULAR.test(url.pathname) ? null : await secretOf(request);
   const found = secret === null ? null : await look(secret);
   if (found === null) {

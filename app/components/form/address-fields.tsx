@@ -15,7 +15,13 @@ export type AddressFieldsProps = {
 };
 
 /** The fields of a postal address, as `addressSchema` reads them. Put them into a `Fieldset` of two columns. */
-export function AddressFields({ form, prefix = "address", countries, section, required = true }: AddressFieldsProps) {
+export function AddressFields({
+  form,
+  prefix = "address",
+  countries,
+  section,
+  required = true,
+}: AddressFieldsProps) {
   const words = useMessages().account.address;
   const name = (part: string) => (prefix === "" ? part : `${prefix}.${part}`);
   const complete = (token: string) => (section === undefined ? token : `${section} ${token}`);
@@ -42,7 +48,11 @@ export function AddressFields({ form, prefix = "address", countries, section, re
         autoComplete={complete("address-line2")}
         span
       />
-      <Field {...form.field(name("postcode"))} label={words.postcode} autoComplete={complete("postal-code")} />
+      <Field
+        {...form.field(name("postcode"))}
+        label={words.postcode}
+        autoComplete={complete("postal-code")}
+      />
       <Field
         {...form.field(name("city"))}
         label={words.city}

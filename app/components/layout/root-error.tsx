@@ -1,4 +1,6 @@
 import { href, isRouteErrorResponse, Link, useLocation } from "react-router";
+import { heldFormIn } from "~/components/account/held-form";
+import { SignedOutMeanwhile } from "~/components/account/held-form-page";
 import { segmentOf } from "~/languages/language";
 import { useLanguage, useMessages } from "~/languages/messages";
 import { type AppErrorCode, appErrorCode } from "~/platform/errors";
@@ -28,6 +30,14 @@ export function RootError({ error }: { error: unknown }) {
     bug: [words.bugTitle, words.bugText],
   }[codeOf(error)];
   const signIn = codeOf(error) === "sign_in_needed";
+  const held = signIn && isRouteErrorResponse(error) ? heldFormIn(error.data) : null;
+  if (held !== null) {
+    return (
+      <main id="content" className="page">
+        <SignedOutMeanwhile held={held} />
+      </main>
+    );
+  }
   return (
     <main id="content" className="page">
       <title>{title}</title>

@@ -55,7 +55,7 @@ describe("firstPage", () => {
     expect(firstPage(["photographer"])).toBe("/studio");
     expect(firstPage(["assistant"])).toBe("/studio");
     expect(firstPage(["bookkeeper"])).toBe("/studio/orders");
-    expect(firstPage(["collector"], "/de")).toBe("/de/account/orders");
+    expect(firstPage(["collector"], "de")).toBe("/de/account/orders");
     expect(firstPage(["printer"])).toBe("/account");
     expect(firstPage([])).toBe("/account");
   });

@@ -1,3 +1,4 @@
+import { href } from "react-router";
 import { can, type Role } from "./permissions";
 
 /**
@@ -20,11 +21,13 @@ function hasControl(text: string): boolean {
   return [...text].some((character) => character <= "\u001f" || character === "\u007f");
 }
 
-/** The page somebody with these roles wants first. `prefix` is "" or "/de". */
-export function firstPage(roles: readonly Role[], prefix = ""): string {
+/** The page somebody with these roles wants first. `lang` is the address segment of the language, if it has one. */
+export function firstPage(roles: readonly Role[], lang?: string): string {
   if (can(roles, "studio.see")) {
-    if (can(roles, "today.see")) return "/studio";
-    if (can(roles, "orders.see")) return "/studio/orders";
+    if (can(roles, "today.see")) return href("/studio");
+    if (can(roles, "orders.see")) return href("/studio/orders");
   }
-  return can(roles, "orders.own") ? `${prefix}/account/orders` : `${prefix}/account`;
+  return can(roles, "orders.own")
+    ? href("/:lang?/account/orders", { lang })
+    : href("/:lang?/account", { lang });
 }

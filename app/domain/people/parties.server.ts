@@ -1,5 +1,5 @@
 import { db } from "db/client.server";
-import { accountRoles, accounts, copies, editions, orders, parties, prints } from "db/schema/schema";
+import { copies, editions, orders, parties, prints } from "db/schema/schema";
 import { and, asc, desc, eq, ilike, or, type SQL, sql } from "drizzle-orm";
 import { runTotal } from "~/domain/editions/ledger.server";
 import { numberMark } from "~/domain/editions/numbering";
@@ -28,11 +28,12 @@ function containing(text: string): string {
   return `%${text.replace(/[\\%_]/g, (character) => `\\${character}`)}%`;
 }
 
-const orderCount = sql<number>`(select count(*) from ${orders} where ${orders.buyerPartyId} = ${parties.id}
-  and ${orders.state} in ('paid', 'cancelled', 'awaiting_payment'))`;
-const copyCount = sql<number>`(select count(*) from ${copies} where ${copies.ownerPartyId} = ${parties.id})`;
-const roles = sql<Role[]>`coalesce((select json_agg(distinct ${accountRoles.role}) from ${accountRoles}
-  join ${accounts} on ${accounts.id} = ${accountRoles.accountId} where ${accounts.partyId} = ${parties.id}), '[]'::json)`;
+// Written out, because Drizzle leaves table names away in a select from one table, and "id" would be the wrong one.
+const orderCount = sql<number>`(select count(*) from orders o
+  where o.buyer_party_id = parties.id and o.state <> 'expired')`;
+const copyCount = sql<number>`(select count(*) from copies c where c.owner_party_id = parties.id)`;
+const roles = sql<Role[]>`coalesce((select json_agg(distinct r.role) from account_roles r
+  join accounts a on a.id = r.account_id where a.party_id = parties.id), '[]'::json)`;
 
 /** The parties of the book by name, fifty a page; `q` is looked for in names, addresses of e-mail and post, and notes. */
 export async function findParties({ q, page }: PartySearch): Promise<PartyPage> {

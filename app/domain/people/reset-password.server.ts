@@ -34,7 +34,7 @@ export async function requestReset(email: string, language: Language): Promise<v
   );
 }
 
-export type ResetOutcome = { code: "reset"; session: StartedSession } | { code: "gone" };
+export type ResetOutcome = { code: "reset"; session: StartedSession; accountId: string } | { code: "gone" };
 
 /**
  * Sets a new password by a link from an e-mail, which is used up, ends every session of the account and starts one for
@@ -52,6 +52,7 @@ export async function resetPassword(token: string, newPassword: string): Promise
       .where(eq(accounts.id, holder.accountId));
     await endTokens(tx, holder.accountId, "verify_email");
     await endSessions(tx, holder.accountId);
-    return { code: "reset", session: await startSession(tx, holder.accountId) };
+    const { accountId } = holder;
+    return { code: "reset", session: await startSession(tx, accountId), accountId };
   });
 }
