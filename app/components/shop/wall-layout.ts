@@ -59,26 +59,26 @@ function inRows(sheets: readonly WallSheet[]): WallLayout {
   const slot = (one: WallSheet) => Math.max(one.sheet.width, narrowestSlot);
   const width = Math.max(2200, ...sheets.map((one) => slot(one) + 2 * margin));
   const chair = { width: 480, height: 754, bottom: 60, x: width - 50 - 480 };
-  const rows: number[][] = [];
+  const rows: { at: number; one: WallSheet }[][] = [];
   let right = Number.POSITIVE_INFINITY;
   sheets.forEach((one, at) => {
     if (right + slot(one) > width - margin) {
       rows.push([]);
       right = margin;
     }
-    rows.at(-1)?.push(at);
+    rows.at(-1)?.push({ at, one });
     right += slot(one) + gap;
   });
-  const lastWidth = right - gap;
   const places: WallLayout["places"] = sheets.map(() => ({ x: 0, bottom: 0 }));
-  /* the last row may stand beside the chair when it is short enough */
-  let foot = lastWidth <= chair.x - 60 ? floor + words : chair.bottom + chair.height + words - 60;
+  const overChair = chair.bottom + chair.height + words - 60;
+  let foot = floor + words;
   for (const row of rows.toReversed()) {
+    const taken = row.reduce((sum, { one }) => sum + slot(one) + gap, margin - gap);
+    /* a row may stand beside the chair when it is short enough */
+    if (taken > chair.x - 60) foot = Math.max(foot, overChair);
     let x = margin;
     let tallest = 0;
-    for (const at of row) {
-      const one = sheets[at];
-      if (!one) continue;
+    for (const { at, one } of row) {
       places[at] = { x, bottom: foot };
       x += slot(one) + gap;
       tallest = Math.max(tallest, one.sheet.height);
