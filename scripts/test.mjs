@@ -28,6 +28,9 @@ const LONG = ["long", "e2e-long"];
 /** Folders below the data folder that may hold a cluster: the shop's, and that of the integration tests. */
 const INSTANCES = ["shop", "."];
 
+/** The browser's tests bring scans of their own; of the demo's they need only a few to look at. */
+const DEMO_SCANS = "2";
+
 /** A start with nothing to do, and a stop, may take this long. In ms. */
 const READY_WITHIN = 10_000;
 const STOPPED_WITHIN = 10_000;
@@ -286,7 +289,13 @@ function startCluster(children) {
 async function endToEnd(name, selection) {
   const ports = await freePorts();
   const shopDirectory = path.join(dataDirectory, "shop");
-  const environment = { ...ports, DATA_DIR: shopDirectory, NUMBERLEAF_MODE: "test", LOG_LEVEL: "info" };
+  const environment = {
+    ...ports,
+    DATA_DIR: shopDirectory,
+    NUMBERLEAF_MODE: "test",
+    LOG_LEVEL: "info",
+    DEMO_SCANS,
+  };
   const start = () => {
     const shop = startShop({ environment, onLine: (line) => say(`   | ${line}`) });
     running.add(shop);

@@ -6,19 +6,26 @@ import { putObject } from "~/platform/storage.server";
 import { db, inTransaction } from "../client.server";
 import { printPictures, scans } from "../schema/schema";
 import { demoScanKey } from "./demo";
-import { frameKey, rolls } from "./scans/catalogue";
+import { frameKey, prints, rolls } from "./scans/catalogue";
 import { renderAll } from "./scans/render-all";
 
-/** Draws the demo's scans that are not in storage yet, and asks for the proofs of each as it comes. */
-export async function seedScans(say: (line: string) => void): Promise<void> {
+/**
+ * Draws the demo's scans that are not in storage yet, and asks for the proofs of each as it comes.
+ *
+ * @param most draw only until so many are there, those of the first prints before others.
+ */
+export async function seedScans(say: (line: string) => void, most = Number.POSITIVE_INFINITY): Promise<void> {
   const waiting = await db
     .select({ id: scans.id, key: scans.objectKey })
     .from(scans)
     .where(and(eq(scans.state, "expected"), like(scans.objectKey, "scans/demo/%")));
   const ids = new Map(waiting.map((s) => [s.key, s.id]));
-  const only = rolls
-    .flatMap((roll) => roll.frames.map((frame) => ({ roll: roll.number, position: frame.position })))
-    .filter((ref) => ids.has(demoScanKey(ref)));
+  const all = rolls.flatMap((roll) =>
+    roll.frames.map((frame) => ({ roll: roll.number, position: frame.position })),
+  );
+  const printed = prints.flatMap((print) => print.frames).slice(0, most);
+  const wanted = Number.isFinite(most) ? printed : all;
+  const only = wanted.filter((ref) => ids.has(demoScanKey(ref)));
   if (only.length === 0) return;
   let done = 0;
   await renderAll(

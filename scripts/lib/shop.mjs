@@ -36,6 +36,7 @@ const NOT_INHERITED = new Set([
   "SETUP_CODE",
   "TRUST_PROXY",
   "LOG_LEVEL",
+  "DEMO_SCANS",
 ]);
 
 /**
