@@ -83,9 +83,9 @@ function runHere(args, environment) {
 /**
  * @param {string} name
  * @param {string[]} command
- * @param {Record<string, string>} [environment]
+ * @param {{ environment?: Record<string, string> }} [options]
  */
-async function runOrThrow(name, [program = "", ...args], environment = {}) {
+async function runOrThrow(name, [program = "", ...args], { environment = {} } = {}) {
   const code = await new Promise((resolve, reject) => {
     const child = spawn(program, args, {
       cwd: PROJECT,

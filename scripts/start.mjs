@@ -27,6 +27,9 @@ import { ensureBuild, ensureNodePackages } from "./lib/source.mjs";
 const PROJECT = path.dirname(path.dirname(fileURLToPath(import.meta.url)));
 const OLDEST_NODE = [20, 19];
 
+/** Proofs and the demo's scans are made in what the pages leave over. */
+const BACKGROUND = 10;
+
 const HELP = `npm start                 the shop with its demo data
 npm start -- --empty      a studio of your own, without demo data
 npm start -- --dev        as npm start, with the development server in place of a build
@@ -211,15 +214,23 @@ async function start(args) {
     rememberState(dataDirectory, { demoData: "begun" });
     say("making the demo data, once");
     await services;
-    await run("seed", [...script("scripts/seed.ts"), "rows"], {}, (line) => say(`  ${line}`));
+    await run("seed", [...script("scripts/seed.ts"), "rows"], {
+      onLine: (line) => say(`  ${line}`),
+    });
     rememberState(dataDirectory, { demoData: "rows" });
   }
 
-  /** The demo's scans are drawn while the shop is open; one that was stopped in the middle goes on. */
+  /**
+   * The demo's scans are drawn while the shop is open; one that was stopped in the middle goes on. A test that brings scans
+   * of its own asks for a few by DEMO_SCANS, so that its own need not wait behind them.
+   */
   async function drawDemoScans() {
     if (readState(dataDirectory).demoData !== "rows") return;
-    await run("demo-scans", [...script("scripts/seed.ts"), "scans"], {}, () => {});
-    rememberState(dataDirectory, { demoData: "complete" });
+    const few = /^\d+$/.exec(process.env.DEMO_SCANS ?? "")?.[0];
+    await run("demo-scans", [...script("scripts/seed.ts"), "scans", ...(few === undefined ? [] : [few])], {
+      niceness: BACKGROUND,
+    });
+    if (few === undefined) rememberState(dataDirectory, { demoData: "complete" });
   }
 
   const packages = ensureNodePackages(PROJECT, { say, run });
@@ -234,8 +245,7 @@ async function start(args) {
     command: script("scripts/worker.ts"),
     phase: "work",
     restart: true,
-    // Proofs are made in what the pages leave over.
-    niceness: 10,
+    niceness: BACKGROUND,
   });
   startChild(
     buildDirectory === undefined

@@ -67,10 +67,11 @@ export function makeChildren({ directory, logDirectory, environment, say, fail }
    * @param {string[]} command
    * @param {Record<string, string>} extra
    * @param {Service["phase"]} phase
+   * @param {number | undefined} niceness
    * @param {(line: string, isError: boolean) => void} onLine
    * @returns {Child & { code: Promise<string> }}
    */
-  function launch(name, command, extra, phase, onLine) {
+  function launch(name, command, extra, phase, niceness, onLine) {
     if (stopping) throw new PlainError("stopped while starting");
     const [program = "", ...args] = dyingWithParent(command);
     // Of a session of its own, so that Ctrl-C in the terminal reaches this process only, which then stops them in order.
@@ -100,6 +101,7 @@ export function makeChildren({ directory, logDirectory, environment, say, fail }
     };
     process_.on("error", (error) => end(error.message));
     process_.on("close", (status, by) => end(by === null ? `code ${status}` : `signal ${by}`));
+    if (niceness !== undefined && child.pid > 0) setPriority(child.pid, niceness);
     children.set(child, phase);
     return child;
   }
@@ -125,12 +127,12 @@ export function makeChildren({ directory, logDirectory, environment, say, fail }
       service.command,
       service.environment ?? {},
       service.phase,
+      service.niceness,
       (line, isError) => {
         const trouble = troubleIn(line, isError && (service.worthTelling ?? (() => true))(line));
         if (trouble !== undefined && !stopping) say(`${service.name}: ${trouble}`);
       },
     );
-    if (service.niceness !== undefined && child.pid > 0) setPriority(child.pid, service.niceness);
     child.code.then((how) => {
       if (stopping) return;
       const log = path.relative(process.cwd(), path.join(logDirectory, `${service.name}.log`));
@@ -155,14 +157,17 @@ export function makeChildren({ directory, logDirectory, environment, say, fail }
    *
    * @param {string} name
    * @param {string[]} command
-   * @param {Record<string, string>} [extra]
-   * @param {(line: string) => void} [onLine] for each line of its standard output.
+   * @param {{
+   *   environment?: Record<string, string>,
+   *   onLine?: (line: string) => void,
+   *   niceness?: number,
+   * }} [options] `onLine` is given each line of its standard output.
    * @throws {PlainError} with the end of its output, where it fails.
    */
-  async function run(name, command, extra = {}, onLine = () => {}) {
+  async function run(name, command, { environment = {}, onLine = () => {}, niceness } = {}) {
     /** @type {string[]} */
     const lines = [];
-    const child = launch(name, command, extra, "work", (line, isError) => {
+    const child = launch(name, command, environment, "work", niceness, (line, isError) => {
       lines.push(line);
       if (lines.length > 40) lines.shift();
       if (!isError) onLine(line);

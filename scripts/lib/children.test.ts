@@ -33,7 +33,9 @@ const log = (name: string) => readFileSync(path.join(directory, "logs", `${name}
 
 test("a command's end is awaited, and its failure tells the end of its output", async () => {
   const lines: string[] = [];
-  await children.run("fine", node("console.log('one')"), {}, (line) => lines.push(line));
+  await children.run("fine", node("console.log('one')"), {
+    onLine: (line) => lines.push(line),
+  });
   expect(lines).toEqual(["one"]);
   expect(log("fine")).toBe("one\n");
   await expect(children.run("bad", node("console.error('the reason'); process.exit(3)"))).rejects.toThrow(
@@ -86,7 +88,9 @@ test("the database is asked to stop only after those that use it have ended", as
     const command = service(phase, phase === "database" ? "SIGINT" : "SIGTERM");
     return children.start({ name: phase, command, phase: phase as "database" | "services" | "work" });
   });
-  await expect.poll(() => ["database", "services", "work"].map(log)).toEqual(["up\n", "up\n", "up\n"]);
+  await expect
+    .poll(() => ["database", "services", "work"].map(log), { timeout: 10_000 })
+    .toEqual(["up\n", "up\n", "up\n"]);
   await children.stop();
   expect(readFileSync(order, "utf8")).toBe(
     "work work-ended services services-ended database database-ended ",

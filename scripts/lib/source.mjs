@@ -103,7 +103,7 @@ export function sourceDigest(projectDirectory) {
  * @param {string} projectDirectory
  * @param {{
  *   say: (line: string) => void,
- *   run: (name: string, command: string[], environment: Record<string, string>) => Promise<void>,
+ *   run: (name: string, command: string[], options: { environment: Record<string, string> }) => Promise<void>,
  * }} tools
  * @returns {Promise<string>} absolute
  */
@@ -124,8 +124,10 @@ export async function ensureBuild(projectDirectory, { say, run }) {
       "build",
       [process.execPath, path.join("node_modules", "@react-router", "dev", "bin.js"), "build"],
       {
-        NODE_ENV: "production",
-        BUILD_DIRECTORY: path.relative(projectDirectory, directory),
+        environment: {
+          NODE_ENV: "production",
+          BUILD_DIRECTORY: path.relative(projectDirectory, directory),
+        },
       },
     );
     writeFileSync(complete, "");

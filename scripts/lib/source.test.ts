@@ -64,8 +64,8 @@ test("the digest follows the content of what is built, not its dates, and not it
 
 test("each state of the source is built once, beside the builds before it", async () => {
   const built: string[] = [];
-  const run = async (_name: string, _command: string[], environment: Record<string, string>) => {
-    built.push(environment.BUILD_DIRECTORY ?? "");
+  const run = async (_name: string, _command: string[], options: { environment: Record<string, string> }) => {
+    built.push(options.environment.BUILD_DIRECTORY ?? "");
   };
   const states = ["one", "two", "one", "three", "four", "five"];
   for (const state of states) {
