@@ -108,8 +108,10 @@ export async function runJobs({ handlers, sweeps, pollingSeconds = 0.5 }: Option
           delay(milliseconds, undefined, { signal: waited.signal }).catch(() => undefined),
         ]);
         waited.abort();
-        for (const entry of running.values()) await giveBack(entry.queue, entry.id);
+        const unfinished = [...running.values()];
+        // Stopping fails what still runs, which may even have been its last try; giving back undoes that.
         await stopQueue(1_000);
+        for (const entry of unfinished) await giveBack(entry.queue, entry.id);
         await locks.end();
       })();
       return stopped;
@@ -117,11 +119,11 @@ export async function runJobs({ handlers, sweeps, pollingSeconds = 0.5 }: Option
   };
 }
 
-/** Puts a running job back as if it had not been taken. pg-boss itself can only fail it, which would count as a try. */
+/** Puts a job of this worker back as if it had not been taken. pg-boss itself can only fail it, which counts as a try. */
 async function giveBack(queue: QueueName, id: string): Promise<void> {
   await pool.query(
-    `update pgboss.job set state = 'retry', started_on = null, start_after = now()
-      where name = $1 and id = $2 and state = 'active'`,
+    `update pgboss.job set state = 'retry', started_on = null, completed_on = null, start_after = now()
+      where name = $1 and id = $2 and state in ('active', 'retry', 'failed')`,
     [queue, id],
   );
 }
