@@ -14,7 +14,7 @@ export type ErrorPageProps = {
 /** What is shown in the place of a page that cannot be: an empty mount, and the way on. */
 export function ErrorPage({ title, text, actions, reference }: ErrorPageProps) {
   return (
-    <div className="error-page">
+    <div className="error-sheet">
       <svg viewBox="0 0 120 150" aria-hidden="true" focusable="false">
         <path className="lf-sheet lf-dash" d="M16 16H104V134H16Z" />
         <path className="lf-stroke" d="M30 30H90V98H30ZM30 112H44M52 112H70M78 112H90" />

@@ -4,11 +4,13 @@ import { layOutWall, type WallLayout, type WallSheet } from "~/components/shop/w
 
 const lengths = fc.integer({ min: 60, max: 1600 });
 const sheets = fc.array(
-  fc
-    .record({ width: lengths, height: lengths })
-    .map(
-      (sheet): WallSheet => ({ sheet, picture: { width: sheet.width * 0.8, height: sheet.height * 0.8 } }),
-    ),
+  fc.record({ width: lengths, height: lengths, letters: fc.integer({ min: 0, max: 40 }) }).map(
+    ({ letters, ...sheet }): WallSheet => ({
+      sheet,
+      picture: { width: sheet.width * 0.8, height: sheet.height * 0.8 },
+      letters,
+    }),
+  ),
   { minLength: 1, maxLength: 6 },
 );
 

@@ -3,6 +3,8 @@
 export type WallSheet = {
   sheet: { width: number; height: number };
   picture: { width: number; height: number };
+  /** Characters in the longest line written under it. */
+  letters: number;
 };
 
 export type WallLayout = {
@@ -20,8 +22,8 @@ const eyeLevel = 1500;
 const floor = 130;
 /** Room under a sheet for its two lines of words. */
 const words = 260;
-/** A small sheet takes this much of a narrow wall, so that its words do not meet the next one's. */
-const narrowestSlot = 700;
+/** Width of a letter where the wall is drawn smallest in each view: the words keep their size, the wall does not. */
+const letter = { wide: 30, narrow: 46 };
 
 /**
  * Lays sheets on a wall. `wide` hangs them in one row, their middles at eye level; `narrow`, for a
@@ -34,14 +36,15 @@ export function layOutWall(sheets: readonly WallSheet[], view: "wide" | "narrow"
 function inOneRow(sheets: readonly WallSheet[]): WallLayout {
   const gap = 210;
   const chair = { width: 560, height: 880, bottom: 60 };
-  const taken = sheets.reduce((sum, one) => sum + one.sheet.width + gap, 0) - gap;
+  const slot = (one: WallSheet) => Math.max(one.sheet.width + gap, one.letters * letter.wide + 60);
+  const taken = sheets.reduce((sum, one) => sum + slot(one), 0) - gap;
   const beside = chair.width + 170;
   const width = Math.max(3800, 250 + Math.max(taken, 0) + gap + beside);
   const tallest = Math.max(0, ...sheets.map((one) => one.sheet.height));
   let x = (width - beside - Math.max(taken, 0)) / 2;
   const places = sheets.map((one) => {
     const place = { x, bottom: eyeLevel - one.sheet.height / 2 };
-    x += one.sheet.width + gap;
+    x += slot(one);
     return place;
   });
   return {
@@ -56,7 +59,7 @@ function inOneRow(sheets: readonly WallSheet[]): WallLayout {
 function inRows(sheets: readonly WallSheet[]): WallLayout {
   const margin = 130;
   const gap = 100;
-  const slot = (one: WallSheet) => Math.max(one.sheet.width, narrowestSlot);
+  const slot = (one: WallSheet) => Math.max(one.sheet.width, one.letters * letter.narrow);
   const width = Math.max(2200, ...sheets.map((one) => slot(one) + 2 * margin));
   const chair = { width: 480, height: 754, bottom: 60, x: width - 50 - 480 };
   const rows: { at: number; one: WallSheet }[][] = [];

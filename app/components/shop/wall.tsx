@@ -1,7 +1,7 @@
 import { useId } from "react";
 import { layOutWall, type WallLayout, type WallSheet } from "~/components/shop/wall-layout";
 
-export type WallPiece = WallSheet & {
+export type WallPiece = Omit<WallSheet, "letters"> & {
   key: string;
   /** One proof of the picture, about 600 px wide. */
   image: string;
@@ -29,8 +29,8 @@ const roomyBelow = 1000;
 /** The sheets of a picture hung side by side, to scale, with a chair to judge them by. */
 export function Wall({ title, text, label, pieces, language }: WallProps) {
   const id = useId();
-  const wide = layOutWall(pieces, "wide");
-  const narrow = layOutWall(pieces, "narrow");
+  const wide = layOutWall(withWords(pieces, "wide"), "wide");
+  const narrow = layOutWall(withWords(pieces, "narrow"), "narrow");
   const roomy = wide.width === 3800 && pieces.every((piece) => piece.sheet.height <= roomyBelow);
   return (
     <section className="wall" aria-labelledby={id}>
@@ -46,11 +46,25 @@ export function Wall({ title, text, label, pieces, language }: WallProps) {
   );
 }
 
+type View = "wide" | "narrow";
+
+/** The two lines under a sheet; on a narrow wall there is no room for the paper beside the number. */
+function linesOf({ number, name, size }: WallPiece, view: View) {
+  return { number, name: number && view === "narrow" ? "" : name, size };
+}
+
+function withWords(pieces: readonly WallPiece[], view: View): WallSheet[] {
+  return pieces.map((piece) => {
+    const { number = "", name, size } = linesOf(piece, view);
+    return { ...piece, letters: Math.max(number.length + 1 + name.length, size.length) };
+  });
+}
+
 type DrawingProps = {
   layout: WallLayout;
   pieces: readonly WallPiece[];
   language: string;
-  view: "wide" | "narrow";
+  view: View;
 };
 
 /**
@@ -76,6 +90,7 @@ function Drawing({ layout, pieces, language, view }: DrawingProps) {
           const place = layout.places[at];
           if (!place) return null;
           const { x, bottom } = place;
+          const lines = linesOf(piece, view);
           const top = bottom + piece.sheet.height;
           const frame = 16;
           const imageLeft = x + (piece.sheet.width - piece.picture.width) / 2;
@@ -112,11 +127,11 @@ function Drawing({ layout, pieces, language, view }: DrawingProps) {
                 preserveAspectRatio="xMidYMid slice"
               />
               <text className="wall-words" x={across(x)} y={down(bottom)} dy="20">
-                {piece.number ? <tspan className="hung-no">{piece.number} </tspan> : null}
-                {piece.name}
+                {lines.number ? <tspan className="hung-no">{lines.number} </tspan> : null}
+                {lines.name}
               </text>
               <text className="wall-words" x={across(x)} y={down(bottom)} dy="36">
-                {piece.size}
+                {lines.size}
               </text>
             </g>
           );
