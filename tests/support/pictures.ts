@@ -23,19 +23,18 @@ type TiffPicture = {
 /** An uncompressed baseline TIFF in one strip, little-endian. */
 export function tiff(picture: TiffPicture): Buffer {
   const { width, height, channels, bits, profile } = picture;
-  const bytes = bits / 8;
-  const pixels = Buffer.alloc(width * height * channels * bytes);
+  const samples = new { 8: Uint8Array, 16: Uint16Array, 32: Float32Array }[bits](width * height * channels);
   let at = 0;
   for (let y = 0; y < height; y++) {
     for (let x = 0; x < width; x++) {
       for (let c = 0; c < channels; c++) {
         const value = picture.value(x, y, c);
-        if (bits === 32) at = pixels.writeFloatLE(value, at);
-        else if (bits === 16) at = pixels.writeUInt16LE(Math.round(value), at);
-        else at = pixels.writeUInt8(Math.round(value), at);
+        samples[at++] = bits === 32 ? value : Math.round(value);
       }
     }
   }
+  // Every machine this runs on keeps its numbers little-endian, as the file does.
+  const pixels = Buffer.from(samples.buffer, samples.byteOffset, samples.byteLength);
   const [SHORT, LONG, UNDEFINED] = [3, 4, 7];
   const fixed: [tag: number, type: number, count: number, value: number | "bits" | "pixels" | "profile"][] = [
     [256, LONG, 1, width],
