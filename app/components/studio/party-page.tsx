@@ -179,7 +179,7 @@ type DetailsProps = {
 function Details({ form, countries, mayChange }: DetailsProps) {
   const busy = useBusy("party");
   return (
-    <Form method="post" className="flow">
+    <Form method="post" className="form-parts">
       <input type="hidden" name="intent" value="party" />
       <Fieldset legend="Who it is" columns={2}>
         <Select

@@ -74,7 +74,8 @@ export function PeoplePage({ people, problem }: { people: PeopleView; problem?: 
       {people.mayChange ? (
         <Block title="Invitations">
           <Invitations rows={people.invitations} />
-          <InviteForm form={form} />
+          {/* A new invitation makes a new, empty form. */}
+          <InviteForm key={people.invitations[0]?.id} form={form} />
         </Block>
       ) : null}
       <Block title="Parties of the book" aside={`${people.parties.total}`}>

@@ -1,4 +1,4 @@
-import { inTransaction, type Tx } from "db/client.server";
+import { db as database, inTransaction, type Tx } from "db/client.server";
 import { editions, formats, papers, priceSteps, prints } from "db/schema/schema";
 import { asc, eq, inArray } from "drizzle-orm";
 import { can, type Role } from "~/domain/people/permissions";
@@ -7,6 +7,7 @@ import { AppError } from "~/platform/errors";
 import { newId } from "~/platform/ids.server";
 import type { DraftEdition } from "./edition-form";
 import { lockEdition } from "./ledger.server";
+import { openingProblems } from "./open-edition.server";
 
 type Who = { roles: readonly Role[] };
 
@@ -171,4 +172,10 @@ export async function readDraft(
       })),
     },
   };
+}
+
+/** What keeps a draft from being opened, as sentences. */
+export async function problemsOfDraft(editionId: string): Promise<string[]> {
+  const [edition] = await database.select().from(editions).where(eq(editions.id, editionId));
+  return edition === undefined ? [] : openingProblems(database, edition);
 }

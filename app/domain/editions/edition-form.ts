@@ -337,7 +337,7 @@ export function planOf(
     ap: whole("artistsProofs") ?? 0,
     pp: whole("printersProofs") ?? 0,
     hc: whole("horsCommerce") ?? 0,
-    bat: (answers["bonATirer"] ?? "") === "" ? 0 : 1,
+    bat: (answers.bonATirer ?? "") === "" ? 0 : 1,
     exhibition: whole("exhibitionCopies") ?? 0,
     formats: rowsOf(answers).formats.map((row) => {
       const offered = sheetOption(row.sheet);

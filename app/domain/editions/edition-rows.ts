@@ -208,3 +208,43 @@ export function actOnRows(
       return null;
   }
 }
+
+/** The rows of a ladder that stands by itself: `steps[0].price`. */
+export function stepsOf(answers: Answers): StepRow[] {
+  return indices(answers, /^steps\[(\d{1,3})\]\./)
+    .slice(0, MOST_STEPS)
+    .map((s) => ({
+      from: text(answers, `steps[${s}].from`),
+      to: text(answers, `steps[${s}].to`),
+      price: text(answers, `steps[${s}].price`),
+    }));
+}
+
+/** The same answers with other rows of a ladder that stands by itself. */
+export function withSteps(answers: Answers, steps: readonly StepRow[]): Answers {
+  const kept = Object.fromEntries(Object.entries(answers).filter(([name]) => !name.startsWith("steps[")));
+  for (const [s, step] of steps.entries()) {
+    for (const field of STEP_FIELDS) kept[`steps[${s}].${field}`] = step[field];
+  }
+  return kept;
+}
+
+/** "add-step" and "remove-step:2" on a ladder that stands by itself; null when a press asks for something else. */
+export function actOnSteps(intent: string, answers: Answers): { answers: Answers; focus: string } | null {
+  const [act, second = "0"] = intent.split(":");
+  const steps = stepsOf(answers);
+  if (act === "add-step") {
+    if (steps.length >= MOST_STEPS) return { answers, focus: "steps[0].from" };
+    const added = nextStep(steps);
+    return {
+      answers: withSteps(answers, [...steps, added]),
+      focus: `steps[${steps.length}].${added.from === "" ? "from" : "to"}`,
+    };
+  }
+  if (act !== "remove-step") return null;
+  const left = steps.filter((_, at) => at !== Number(second));
+  return {
+    answers: withSteps(answers, left.length === 0 ? [EMPTY_STEP] : left),
+    focus: `steps[${Math.max(0, Math.min(Number(second), left.length - 1))}].from`,
+  };
+}

@@ -13,9 +13,13 @@ export type InstantOfWallClock =
 const TIME = /^([01]\d|2[0-3]):([0-5]\d)$/;
 const HOURS = 3_600_000;
 
-/** What the clocks of a zone show at an instant: "2026-12-01", "18:00". Seconds are left out. */
-export function wallClock(at: Date, zone: ZoneName): WallClock {
-  const parts = new Intl.DateTimeFormat("en", {
+/** Making a formatter costs far more than using it. */
+const formatters = new Map<ZoneName, Intl.DateTimeFormat>();
+
+function formatterFor(zone: ZoneName): Intl.DateTimeFormat {
+  const known = formatters.get(zone);
+  if (known !== undefined) return known;
+  const made = new Intl.DateTimeFormat("en", {
     timeZone: zone,
     calendar: "gregory",
     numberingSystem: "latn",
@@ -25,7 +29,14 @@ export function wallClock(at: Date, zone: ZoneName): WallClock {
     day: "2-digit",
     hour: "2-digit",
     minute: "2-digit",
-  }).formatToParts(at);
+  });
+  formatters.set(zone, made);
+  return made;
+}
+
+/** What the clocks of a zone show at an instant: "2026-12-01", "18:00". Seconds are left out. */
+export function wallClock(at: Date, zone: ZoneName): WallClock {
+  const parts = formatterFor(zone).formatToParts(at);
   const value = (type: string) => parts.find((part) => part.type === type)?.value ?? "";
   return {
     day: `${value("year").padStart(4, "0")}-${value("month")}-${value("day")}`,

@@ -9,6 +9,7 @@ import { AppError } from "~/platform/errors";
 import { enqueue } from "~/platform/queue.server";
 import { isSameCrop } from "./crop";
 import { addPictures, isSlugTaken, type PrintFields, seriesOf, slugFor } from "./make-print.server";
+import type { PrintAct } from "./print-form";
 import { picturesFixedBecause, slugFixedBecause } from "./publishing";
 
 export type EditOutcome = { kind: "done" } | { kind: "refused"; sentence: string };
@@ -211,4 +212,26 @@ export async function deletePrint(actor: Actor, printId: string): Promise<EditOu
     await tx.db.delete(prints).where(eq(prints.id, printId));
     return DONE;
   });
+}
+
+/** Does what a press of the print's page asks of its pictures, or of the print as a whole. */
+export function actOnPictures(
+  actor: Actor,
+  printId: string,
+  form: Exclude<PrintAct, { intent: "words" | "publish" | "withdraw" }>,
+): Promise<EditOutcome> {
+  switch (form.intent) {
+    case "picture":
+      return editPicture(actor, printId, form);
+    case "add-pictures":
+      return addToPrint(actor, printId, form.frames);
+    case "move-picture:earlier":
+      return movePicture(actor, printId, form.pictureId, "earlier");
+    case "move-picture:later":
+      return movePicture(actor, printId, form.pictureId, "later");
+    case "remove-picture":
+      return removePicture(actor, printId, form.pictureId);
+    case "delete":
+      return deletePrint(actor, printId);
+  }
 }

@@ -96,14 +96,14 @@ export const printForm = z.discriminatedUnion("intent", [
   wordsForm,
   pictureForm,
   z.object({ intent: z.literal("add-pictures"), frames: many(z.uuid(), 100) }),
-  z.object({
-    intent: z.literal("move-picture"),
-    pictureId: z.uuid(),
-    to: z.enum(["earlier", "later"]),
-  }),
+  z.object({ intent: z.literal("move-picture:earlier"), pictureId: z.uuid() }),
+  z.object({ intent: z.literal("move-picture:later"), pictureId: z.uuid() }),
   z.object({ intent: z.literal("remove-picture"), pictureId: z.uuid() }),
-  z.object({ intent: z.enum(["publish", "withdraw", "delete"]) }),
+  z.object({ intent: z.literal("publish") }),
+  z.object({ intent: z.literal("withdraw") }),
+  z.object({ intent: z.literal("delete") }),
 ]);
+export type PrintAct = z.output<typeof printForm>;
 
 /** Moves a print or a series up or down in the studio's own order. */
 export const moveForm = z.object({

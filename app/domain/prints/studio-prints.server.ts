@@ -12,6 +12,7 @@ import {
 } from "db/schema/schema";
 import { and, asc, desc, eq, inArray, isNotNull, isNull, or, sql } from "drizzle-orm";
 import type { Crop } from "~/domain/imaging/proof-sizes";
+import { now } from "~/platform/clock";
 import type { PrintState } from "./publishing";
 
 /** A proof by its id: the studio reads it at `/studio/proofs/:proofId`, whether it is public or not. */
@@ -250,6 +251,7 @@ export type PrintEdition = {
   limit: number;
   left: number;
   releaseAt: Date | null;
+  released: boolean;
 };
 
 export type StudioPrint = typeof prints.$inferSelect & {
@@ -329,6 +331,7 @@ export async function studioPrint(printId: string): Promise<StudioPrint | null> 
       limit: edition.limit,
       left: left.find((row) => row.editionId === edition.id)?.n ?? 0,
       releaseAt: edition.releaseAt,
+      released: edition.releaseAt !== null && edition.releaseAt <= now(),
     })),
     pictures: rows.map(({ picture, frame, roll, scan }): PrintPicture => {
       const size = { width: scan.width ?? 5, height: scan.height ?? 4 };

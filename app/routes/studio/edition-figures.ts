@@ -1,6 +1,18 @@
-// PLACEHOLDER_ROUTE
-import { AppError } from "~/platform/errors";
+import { planning } from "~/domain/editions/plan-edition.server";
+import type { Answers } from "~/platform/form-fields";
+import { isUuid } from "~/platform/uuid";
+import type { Route } from "./+types/edition-figures";
 
-export function loader() {
-  throw new AppError("not_found");
+/** Far more than any plan says. */
+const LONGEST = 30_000;
+
+/** The figures of a plan as far as it goes, asked for while its form is filled in. */
+export async function loader({ request }: Route.LoaderArgs) {
+  const { searchParams, search } = new URL(request.url);
+  const printId = searchParams.get("printId");
+  const editionId = searchParams.get("id");
+  if (!isUuid(printId) || search.length > LONGEST) return { figures: null };
+  const answers: Answers = Object.fromEntries(searchParams);
+  const plan = await planning(printId, answers, isUuid(editionId) ? editionId : null);
+  return { figures: plan?.figures ?? null };
 }
