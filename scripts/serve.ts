@@ -11,8 +11,8 @@ import { createWeb } from "./lib/web";
  * The web process: serve.ts BUILD_FOLDER. Keeps nothing of its own, so any number may run.
  */
 
-/** Requests get this long to end after the process was asked to stop, in ms. */
-const GRACE = 7_000;
+/** Requests get this long to end after the process was asked to stop, in ms; the start command allows a second more. */
+const GRACE = 6_000;
 
 /** Longer than the idle time of common proxies, so that they never use a connection that is just closing. In ms. */
 const KEEP_ALIVE = 65_000;

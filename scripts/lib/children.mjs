@@ -22,10 +22,10 @@ const STEADY = 60_000;
 /** Phases of stopping: those of a later one serve those of an earlier one. Times in ms after the stop was asked for. */
 const PHASES = {
   /** Web and worker: end their requests and jobs. */
-  work: { signal: "SIGTERM", killAfter: 8_000 },
+  work: { signal: "SIGTERM", killAfter: 7_000 },
   /** The stand-ins for outside services. */
-  services: { signal: "SIGTERM", killAfter: 8_700 },
-  database: { signal: "SIGINT", killAfter: 9_400 },
+  services: { signal: "SIGTERM", killAfter: 7_700 },
+  database: { signal: "SIGINT", killAfter: 9_000 },
 };
 
 /**
