@@ -1,4 +1,5 @@
-import { useId } from "react";
+import { type ReactNode, useId } from "react";
+import { Link } from "react-router";
 import { type Fact, Facts } from "~/components/ui/facts";
 import { MarginLine, type MarginLineProps } from "~/components/ui/margin-line";
 import { Picture, type PictureProps } from "~/components/ui/picture";
@@ -72,6 +73,28 @@ export function CertificateSheet({
         </div>
       </footer>
     </main>
+  );
+}
+
+export type CertificateDeskProps = {
+  /** Names what stands above the page: "This page". */
+  label: string;
+  back: { label: string; to: string };
+  /** "One A4 page, margins set. Print it from the browser's menu." */
+  words: string;
+  children: ReactNode;
+};
+
+/** What a page made to be printed lies on; none of it is printed. */
+export function CertificateDesk({ label, back, words, children }: CertificateDeskProps) {
+  return (
+    <div className="desk">
+      <nav className="desk-bar no-print" aria-label={label}>
+        <Link to={back.to}>{back.label}</Link>
+        <span className="note">{words}</span>
+      </nav>
+      {children}
+    </div>
   );
 }
 

@@ -42,8 +42,8 @@ export function Part({ headingId, title, intro, note, children, beside }: PartPr
         {intro ? <p>{intro}</p> : null}
         {note ? <p className="note">{note}</p> : null}
       </div>
-      <div className="part-body">{children}</div>
-      {beside ? <div className="legend-col">{beside}</div> : null}
+      <div>{children}</div>
+      {beside ? <div>{beside}</div> : null}
     </div>
   );
 }
