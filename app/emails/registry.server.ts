@@ -2,9 +2,15 @@ import type { z } from "zod";
 import type { Language } from "~/languages/language";
 import { accountExists } from "./account-exists";
 import type { BuiltEmail } from "./built-email";
+import { dispatch } from "./dispatch";
 import { emailChanged } from "./email-changed";
 import { invitation } from "./invitation";
 import { type EmailKind, EMAIL_PAYLOADS as payloads } from "./kinds";
+import { newOrder } from "./new-order";
+import { numberOffer } from "./number-offer";
+import { orderConfirmation } from "./order-confirmation";
+import { payLink } from "./pay-link";
+import { refund } from "./refund";
 import { resetPassword } from "./reset-password";
 import { verifyEmail } from "./verify-email";
 
@@ -25,4 +31,10 @@ export const BUILDERS: Record<EmailKind, Build> = {
   "account-exists": from(payloads["account-exists"], accountExists),
   "email-changed": from(payloads["email-changed"], emailChanged),
   invitation: from(payloads.invitation, invitation),
+  "order-confirmation": from(payloads["order-confirmation"], orderConfirmation),
+  "new-order": from(payloads["new-order"], newOrder),
+  refund: from(payloads.refund, refund),
+  dispatch: from(payloads.dispatch, dispatch),
+  "number-offer": from(payloads["number-offer"], numberOffer),
+  "pay-link": from(payloads["pay-link"], payLink),
 };

@@ -4,6 +4,7 @@ import type { TaxSum } from "~/domain/orders/tax-sums";
 import { countryName } from "~/domain/people/countries";
 import { LANGUAGE_TAG, type Language } from "~/languages/language";
 import { count, fill, messagesOf } from "~/languages/messages";
+import { currencyCode, formatMoney } from "~/platform/money";
 
 type Money = Pick<Shown, "language" | "currency">;
 
@@ -65,4 +66,14 @@ export function lineWords(
   language: Language,
 ): string {
   return fill(messagesOf(language).checkout.lineWords, { paper: line.paper, ...line.sheet });
+}
+
+/** "One print", "2 prints" */
+export function numberOfCopies(n: number, language: Language): string {
+  return count(language, messagesOf(language).checkout.sheets, n);
+}
+
+/** A sum of an order as a letter writes it, always with its decimals: it is a receipt. */
+export function orderAmount(amount: number, currency: string, language: Language): string {
+  return formatMoney({ amount, currency: currencyCode(currency) }, LANGUAGE_TAG[language]);
 }
