@@ -53,21 +53,51 @@ export class Plate {
     }
   }
 
-  /** Everything below the line top(x), antialiased; tone(x, y, depthBelowLine, old). Stops at row `to`. */
-  hill(top, tone, to = 1) {
-    const { w, h, px } = this,
-      s = 1 / h,
-      t = new Float32Array(w);
+  /** A slowly changing fn(x, y), worked out every `div` pixels at 3000 and interpolated: cheap to ask often. */
+  field(fn, div = 6) {
+    const { w, h } = this;
+    const step = Math.max(1, Math.round((div * Math.max(w, h)) / 3000));
+    const gw = Math.ceil(w / step) + 2;
+    const gh = Math.ceil(h / step) + 2;
+    const g = new Float32Array(gw * gh);
+    for (let j = 0; j < gh; j++)
+      for (let i = 0; i < gw; i++) g[j * gw + i] = fn((i * step) / h, (j * step) / h);
+    const scale = h / step;
+    return (x, y) => {
+      const fx = Math.max(0, Math.min(gw - 1.001, x * scale));
+      const fy = Math.max(0, Math.min(gh - 1.001, y * scale));
+      const i = fx | 0;
+      const j = fy | 0;
+      const q = j * gw + i;
+      const tx = fx - i;
+      const a = g[q] + (g[q + 1] - g[q]) * tx;
+      const b = g[q + gw] + (g[q + gw + 1] - g[q + gw]) * tx;
+      return a + (b - a) * (fy - j);
+    };
+  }
+
+  /**
+   * Everything below the line top(x), antialiased; tone(x, y, depthBelowLine, old). `hidden`, if given, holds a y
+   * for each column from which something painted later will cover it.
+   */
+  hill(top, tone, hidden = null) {
+    const { w, h, px } = this;
+    const s = 1 / h;
+    const t = new Float32Array(w);
+    const end = new Float32Array(w).fill(h);
     let lo = h;
+    let hi = 0;
     for (let i = 0; i < w; i++) {
       t[i] = top((i + 0.5) * s) * h;
-      if (t[i] < lo) lo = t[i];
+      if (hidden) end[i] = Math.min(h, hidden[i] * h + 2);
+      lo = Math.min(lo, t[i]);
+      hi = Math.max(hi, end[i]);
     }
-    for (let j = Math.max(0, Math.floor(lo)); j < Math.min(h, to * h); j++) {
+    for (let j = Math.max(0, Math.floor(lo)); j < hi; j++) {
       const y = (j + 0.5) * s;
       for (let i = 0, k = j * w; i < w; i++, k++) {
         const c = j + 1 - t[i];
-        if (c <= 0) continue;
+        if (c <= 0 || j > end[i]) continue;
         const v = tone((i + 0.5) * s, y, (j + 0.5 - t[i]) * s, px[k]);
         px[k] = c >= 1 ? v : px[k] + (v - px[k]) * c;
       }

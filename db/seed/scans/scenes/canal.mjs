@@ -4,7 +4,7 @@ import { drawTree, grassEdge, growTree, limbLight, treeLine } from "../trees.mjs
 import { mist, sky, streaks } from "./common.mjs";
 
 /** Courses of brick or block: tone multiplier at (u, v), with mortar and weather. */
-function masonry(seed, { course, unit, joint = 0.12, vary = 0.28, mortar = 1.5 }) {
+function masonry(seed, { course, unit, joint = 0.12, vary = 0.28, mortar = 1.5, weather = 0.3 }) {
   const f = tile("fine"),
     c = tile("cloud"),
     tone = new Float32Array(4096),
@@ -20,11 +20,9 @@ function masonry(seed, { course, unit, joint = 0.12, vary = 0.28, mortar = 1.5 }
       jw = (joint * course) / unit;
     const inJoint = fv < joint || fu < jw ? 1 : 0;
     const t = tone[(Math.imul(row, 131) + Math.imul(col, 17)) & 4095];
-    return (
-      mix(1, inJoint ? mortar : t, keep) *
-      (1 + 0.14 * f.at(u * 2.1, v * 2.1) + 0.1 * f.at(u * 8.3, v * 8.3)) *
-      Math.exp(0.3 * c.at(u * 0.35, v * 0.5))
-    );
+    const skin =
+      mix(1, inJoint ? mortar : t, keep) * (1 + 0.14 * f.at(u * 2.1, v * 2.1) + 0.1 * f.at(u * 8.3, v * 8.3));
+    return weather ? skin * Math.exp(weather * c.at(u * 0.35, v * 0.5)) : skin;
   };
 }
 
@@ -121,8 +119,8 @@ export const bridge = {
       outer.push([cx + Math.cos(a) * R, yw - Math.sin(a) * R]);
     }
     outer.push([cx - R, yw + 0.01], [-0.05, yw + 0.01]);
-    const brick = masonry(r.int(1, 999), { course: 0.0125, unit: 0.038 });
-    const ring = masonry(r.int(1, 999), { course: 0.017, unit: 0.0145, vary: 0.3, joint: 0.09 });
+    const brick = masonry(r.int(1, 999), { course: 0.0125, unit: 0.038, weather: 0 });
+    const ring = masonry(r.int(1, 999), { course: 0.017, unit: 0.0145, vary: 0.3, joint: 0.09, weather: 0 });
     // underside of the vault first: the far face is smaller and set to one side
     const fx = cx + r.pick([-1, 1]) * 0.012,
       fr = R * 0.8;
@@ -150,25 +148,28 @@ export const bridge = {
         0.02 * t * t
       );
     });
-    const damp = (x, y) => mix(1, 0.35, smooth(0.09, 0, yw - y + 0.02 * c.at(x * 0.7, 0.2)));
+    // damp near the water, stains running down, the light from above: all of it changes slowly
+    const weather = p.field(
+      (x, y) =>
+        mix(1, 0.35, smooth(0.09, 0, yw - y + 0.02 * c.at(x * 0.7, 0.2))) *
+        Math.exp(
+          0.42 * n.at(x * 0.35 + 0.2, y * 0.2) +
+            0.22 * c.at(x * 1.4, y * 0.18) +
+            0.3 * c.at(x * 0.35, (y - road(x) * 0.25) * 0.5),
+        ),
+      6,
+    );
+    const sag = Float32Array.from({ length: p.w }, (_, k) => road((k + 0.5) / p.h) * 0.25);
     p.poly([outer], (x, y) => {
-      const d = Math.sqrt((x - cx) ** 2 + (y - yw) ** 2),
-        stain = Math.exp(0.42 * n.at(x * 0.35 + 0.2, y * 0.2) + 0.22 * c.at(x * 1.4, y * 0.18));
-      const out = smooth(R + 0.034 - px, R + 0.034 + px, d),
-        a = Math.atan2(yw - y, x - cx),
-        stone = out < 1 ? 0.135 * ring(a * R, d - R + 0.017 * 3, px) * damp(x, y) * stain : 0;
-      if (out === 0) return stone;
-      const under = 1 - 0.35 * smooth(0.05, 0.034, d - R);
-      return mix(
-        stone,
-        0.088 *
-          brick(x, y - road(x) * 0.25, px) *
-          damp(x, y) *
-          stain *
-          under *
-          mix(1.25, 0.75, smooth(0.2, yw, y)),
-        out,
-      );
+      const dx = x - cx;
+      const d = Math.sqrt(dx * dx + (y - yw) * (y - yw));
+      const out = smooth(R + 0.034 - px, R + 0.034 + px, d);
+      const stone = out < 1 ? 0.135 * ring(Math.atan2(yw - y, dx) * R, d - R + 0.017 * 3, px) : 0;
+      if (out === 0) return stone * weather(x, y);
+      const under = d > R + 0.05 ? 1 : 1 - 0.35 * smooth(0.05, 0.034, d - R);
+      const course =
+        0.088 * brick(x, y - sag[(x * p.h) | 0], px) * under * mix(1.25, 0.75, smooth(0.2, yw, y));
+      return mix(stone, course, out) * weather(x, y);
     });
     // string course, parapet coping
     for (const [dy, th, t] of [

@@ -1,5 +1,5 @@
 // Downs, ridges, ploughland, snow.
-import { clamp, mix, smooth, tile } from "../noise.mjs";
+import { clamp, mix, rng, smooth, tile } from "../noise.mjs";
 import { copse, drawTree, grassEdge, growTree, hanger, limbLight } from "../trees.mjs";
 import { clouds, groundNoise, mist, sky, streaks } from "./common.mjs";
 
@@ -140,24 +140,37 @@ export const ridges = {
     sky(p, r, { top: 0.3, low: 1.0, at: 0.4, gx: sx / A, gy: sy, glow: 0.9, size: 0.34, cloud: 0.05 });
     streaks(p, r, { vx: 1.8, yh: 0.4, strength: 0.2, freq: 0.5, along: 0.05, to: 0.4, lift: 0.1 });
     const N = 9;
+    const near = (x) => Math.exp(-(((x - sx) / 0.55) ** 2));
+    // all the skylines first, a height for each column, so that what a nearer ridge hides is not painted
+    const shape = rng(r.int(0, 1e9));
+    const ridge = Array.from({ length: N }, (_, i) => {
+      const t = i / (N - 1);
+      const base = mix(0.335, 0.9, t ** 1.12);
+      const amp = mix(0.016, 0.055, t);
+      const f = mix(0.12, 0.06, t);
+      const q = shape.next();
+      const line = Float32Array.from({ length: p.w }, (_, k) => {
+        const x = (k + 0.5) / p.h;
+        return (
+          base +
+          amp * (1.15 * n.at(x * f * 1.25 + q, q * 3) + 0.18 * n.at(x * f * 3 + q, q)) +
+          0.0012 * (1 - t * 0.4) * c.at(x * 0.5, q) -
+          0.04 * t * smooth(0.75, 0, x / A) * (i % 2 ? 1 : -0.6)
+        );
+      });
+      return { t, q, line };
+    });
+    const covered = new Float32Array(p.w).fill(1);
+    for (let i = N - 1; i >= 0; i--) {
+      ridge[i].hidden = covered.slice();
+      for (let k = 0; k < p.w; k++) covered[k] = Math.min(covered[k], ridge[i].line[k]);
+    }
     for (let i = 0; i < N; i++) {
-      const t = i / (N - 1),
-        base = mix(0.335, 0.9, t ** 1.12),
-        amp = mix(0.016, 0.055, t),
-        q = r.next(),
-        f = mix(0.12, 0.06, t);
-      const top = (x) =>
-        base +
-        amp * (1.15 * n.at(x * f * 1.25 + q, q * 3) + 0.18 * n.at(x * f * 3 + q, q)) +
-        0.0012 * (1 - t * 0.4) * c.at(x * 0.5, q) -
-        0.04 * t * smooth(0.75, 0, x / A) * (i % 2 ? 1 : -0.6);
-      // the next ridge always covers this one from here down
-      const next = (i + 1) / (N - 1),
-        hidden = i < N - 1 ? mix(0.335, 0.9, next ** 1.12) + 4.6 * mix(0.016, 0.055, next) + 0.05 : 1;
+      const { t, q, line, hidden } = ridge[i];
+      const top = (x) => line[Math.max(0, Math.min(p.w - 1, (x * p.h) | 0))];
       const dark = 0.8 * Math.exp(-t * 3.5) - 0.008,
         span = mix(0.05, 0.16, t),
         air = mix(0.95, 0.5, t);
-      const near = (x) => Math.exp(-(((x - sx) / 0.55) ** 2));
       const toneAt = (x) => dark * (1 + 0.5 * near(x) * (1 - t)),
         sz = mix(0.007, 0.034, t ** 1.6),
         f2 = tile("fine");
@@ -217,8 +230,8 @@ export const ridges = {
           },
           rough: 0.35,
           scale: 1.2,
-          y0: base - amp * 4,
-          y1: hidden,
+          y0: line.reduce((a, b) => Math.min(a, b), 1) - 0.02,
+          y1: hidden.reduce((a, b) => Math.max(a, b), 0),
         });
     }
     p.map((_x, y, v) => v * (1 - 0.55 * smooth(0.86, 1, y)), 0.84, 1);
