@@ -48,9 +48,9 @@ const byWay = z.discriminatedUnion("method", [
 ]);
 
 const loose = z.looseObject({
-  method: z.unknown(),
-  name: z.unknown(),
-  address: z.looseObject({ name: z.unknown() }).optional(),
+  method: z.unknown().optional(),
+  name: z.unknown().optional(),
+  address: z.looseObject({ name: z.unknown().optional() }).optional(),
 });
 
 /**
