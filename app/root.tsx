@@ -30,6 +30,12 @@ export async function loader({ request, context, params }: Route.LoaderArgs) {
   return { nonce: context.get(requestInfoContext).nonce, theme: await readTheme(request), language };
 }
 
+/** A refusal thrown anywhere says when to come back, and this is where its page is made. */
+export function headers({ errorHeaders }: Route.HeadersArgs): HeadersInit {
+  const retryAfter = errorHeaders?.get("Retry-After");
+  return retryAfter ? { "Retry-After": retryAfter } : {};
+}
+
 export function Layout({ children }: { children: React.ReactNode }) {
   const data = useRouteLoaderData<typeof loader>("root");
   // A page that needs no interaction says so in its handle and ships no script.

@@ -94,51 +94,53 @@ function Details({ name, email }: { name: FormState; email: FormState }) {
   const busyEmail = useBusy("email");
   return (
     <Window labelledBy="details">
-      <h2 id="details">{words.page.details}</h2>
-      <Form method="post">
-        <input type="hidden" name="intent" value="name" />
-        <div className="fields">
-          <Field
-            {...name.field("name")}
-            label={words.name}
-            hint={words.nameHint}
-            autoComplete="name"
-            required
-          />
-        </div>
-        <p className="form-acts">
-          <Press variant="outlined" busy={busyName}>
-            {words.page.saveName}
-          </Press>
-        </p>
-      </Form>
-      <Form method="post">
-        <input type="hidden" name="intent" value="email" />
-        <div className="fields">
-          <Field
-            {...email.field("email")}
-            id="email-email"
-            label={words.email}
-            hint={words.page.emailIntro}
-            type="email"
-            autoComplete="username"
-            required
-          />
-          <Field
-            {...email.field("password")}
-            id="email-password"
-            label={words.currentPassword}
-            type="password"
-            autoComplete="current-password"
-            required
-          />
-        </div>
-        <p className="form-acts">
-          <Press variant="outlined" busy={busyEmail}>
-            {words.page.saveEmail}
-          </Press>
-        </p>
-      </Form>
+      <div className="form-parts">
+        <h2 id="details">{words.page.details}</h2>
+        <Form method="post">
+          <input type="hidden" name="intent" value="name" />
+          <div className="fields">
+            <Field
+              {...name.field("name")}
+              label={words.name}
+              hint={words.nameHint}
+              autoComplete="name"
+              required
+            />
+          </div>
+          <p className="form-acts">
+            <Press variant="outlined" busy={busyName}>
+              {words.page.saveName}
+            </Press>
+          </p>
+        </Form>
+        <Form method="post">
+          <input type="hidden" name="intent" value="email" />
+          <div className="fields">
+            <Field
+              {...email.field("email")}
+              id="email-email"
+              label={words.email}
+              hint={words.page.emailIntro}
+              type="email"
+              autoComplete="username"
+              required
+            />
+            <Field
+              {...email.field("password")}
+              id="email-password"
+              label={words.currentPassword}
+              type="password"
+              autoComplete="current-password"
+              required
+            />
+          </div>
+          <p className="form-acts">
+            <Press variant="outlined" busy={busyEmail}>
+              {words.page.saveEmail}
+            </Press>
+          </p>
+        </Form>
+      </div>
     </Window>
   );
 }
@@ -148,81 +150,93 @@ function Password({ form }: { form: FormState }) {
   const busy = useBusy("password");
   return (
     <Window labelledBy="security">
-      <h2 id="security">{words.page.security}</h2>
-      <Form method="post">
-        <input type="hidden" name="intent" value="password" />
-        <div className="fields">
-          <Field
-            {...form.field("password")}
-            id="password-password"
-            label={words.currentPassword}
-            type="password"
-            autoComplete="current-password"
-            required
-          />
-          <Field
-            {...form.field("newPassword")}
-            label={words.newPassword}
-            hint={words.newPasswordHint}
-            type="password"
-            autoComplete="new-password"
-            required
-          />
+      <div className="form-parts">
+        <h2 id="security">{words.page.security}</h2>
+        <Form method="post">
+          <input type="hidden" name="intent" value="password" />
+          <div className="fields">
+            <Field
+              {...form.field("password")}
+              id="password-password"
+              label={words.currentPassword}
+              type="password"
+              autoComplete="current-password"
+              required
+            />
+            <Field
+              {...form.field("newPassword")}
+              label={words.newPassword}
+              hint={words.newPasswordHint}
+              type="password"
+              autoComplete="new-password"
+              required
+            />
+          </div>
+          <p className="note">{words.page.passwordIntro}</p>
+          <p className="form-acts">
+            <Press variant="outlined" busy={busy}>
+              {words.page.savePassword}
+            </Press>
+          </p>
+        </Form>
+        <div>
+          <h3>{words.page.language}</h3>
+          <p className="quiet">{words.page.languageText}</p>
         </div>
-        <p className="note">{words.page.passwordIntro}</p>
-        <p className="form-acts">
-          <Press variant="outlined" busy={busy}>
-            {words.page.savePassword}
-          </Press>
-        </p>
-      </Form>
-      <h3>{words.page.language}</h3>
-      <p className="quiet">{words.page.languageText}</p>
+      </div>
     </Window>
   );
 }
 
 function Sessions({ sessions }: { sessions: AccountView["sessions"] }) {
   const words = useMessages().account;
+  const lang = segmentOf(useLanguage());
   return (
     <div className="all">
       <Window labelledBy="sessions">
-        <h2 id="sessions">{words.page.sessions}</h2>
-        <p>{words.page.sessionsText}</p>
-        <Table
-          caption={words.page.sessions}
-          rows={sessions}
-          rowKey={(session) => session.id}
-          columns={[
-            { key: "since", head: words.page.since, cell: (session) => session.since, names: true },
-            { key: "seen", head: words.page.lastSeen, cell: (session) => session.lastSeen },
-            {
-              key: "end",
-              head: words.page.end,
-              headHidden: true,
-              cell: (session) =>
-                session.isThis ? (
-                  words.page.thisBrowser
-                ) : (
-                  <Form method="post">
-                    <input type="hidden" name="intent" value="end-session" />
-                    <input type="hidden" name="sessionId" value={session.id} />
-                    <Press
-                      variant="word"
-                      small
-                      aria-label={fill(words.page.endLabel, { time: session.since })}
-                    >
-                      {words.page.end}
-                    </Press>
-                  </Form>
-                ),
-            },
-          ]}
-        />
-        <Form method="post" className="form-acts">
-          <input type="hidden" name="intent" value="everywhere" />
-          <Press variant="outlined">{words.page.everywhere}</Press>
-        </Form>
+        <div className="form-parts">
+          <h2 id="sessions">{words.page.sessions}</h2>
+          <p>{words.page.sessionsText}</p>
+          <Table
+            caption={words.page.sessions}
+            rows={sessions}
+            rowKey={(session) => session.id}
+            columns={[
+              { key: "since", head: words.page.since, cell: (session) => session.since, names: true },
+              { key: "seen", head: words.page.lastSeen, cell: (session) => session.lastSeen },
+              {
+                key: "end",
+                head: words.page.end,
+                headHidden: true,
+                cell: (session) =>
+                  session.isThis ? (
+                    words.page.thisBrowser
+                  ) : (
+                    <Form method="post">
+                      <input type="hidden" name="intent" value="end-session" />
+                      <input type="hidden" name="sessionId" value={session.id} />
+                      <Press
+                        variant="word"
+                        small
+                        aria-label={fill(words.page.endLabel, { time: session.since })}
+                      >
+                        {words.page.end}
+                      </Press>
+                    </Form>
+                  ),
+              },
+            ]}
+          />
+          <div className="acts">
+            <Form method="post" action={href("/:lang?/sign-out", { lang })}>
+              <Press variant="outlined">{words.signOut.press}</Press>
+            </Form>
+            <Form method="post">
+              <input type="hidden" name="intent" value="everywhere" />
+              <Press variant="outlined">{words.page.everywhere}</Press>
+            </Form>
+          </div>
+        </div>
       </Window>
     </div>
   );

@@ -14,7 +14,8 @@ export type SetupPageProps = {
   title: string;
   lists: {
     zones: readonly string[];
-    currencies: readonly string[];
+    /** Named by the server: browsers do not all have the same names. */
+    currencies: readonly { code: string; name: string }[];
     countries: readonly { code: string; name: string }[];
   };
   problem?: FormProblem;
@@ -25,13 +26,12 @@ export function SetupPage({ title, lists, problem }: SetupPageProps) {
   const form = formState(problem, {}, { form: "code" });
   const busy = useBusy();
   const country = form.field("vatCountry");
-  const currencyNames = new Intl.DisplayNames("en-GB", { type: "currency" });
   return (
     <div className="flow">
       <h1>{title}</h1>
       <p className="lead">Six things, and the shop is yours. All but the currency can be changed later.</p>
       <Problems form={form} />
-      <Form method="post" className="flow">
+      <Form method="post" className="form-parts">
         <Fieldset legend="The code" hint="The start command has printed it. It works once.">
           <Field
             {...form.field("code")}
@@ -92,10 +92,7 @@ export function SetupPage({ title, lists, problem }: SetupPageProps) {
             label="Currency"
             hint="All prices are in it. It cannot be changed once something has been sold."
             blank="Choose a currency"
-            options={lists.currencies.map((code) => ({
-              value: code,
-              label: `${code}, ${currencyNames.of(code) ?? code}`,
-            }))}
+            options={lists.currencies.map(({ code, name }) => ({ value: code, label: `${code}, ${name}` }))}
             required
           />
         </Fieldset>

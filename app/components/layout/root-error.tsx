@@ -1,6 +1,8 @@
-import { href, isRouteErrorResponse, Link, useLocation } from "react-router";
+import { href, isRouteErrorResponse, useLocation } from "react-router";
 import { heldFormIn } from "~/components/account/held-form";
 import { SignedOutMeanwhile } from "~/components/account/held-form-page";
+import { ErrorPage } from "~/components/layout/error-page";
+import { Window } from "~/components/ui/window";
 import { segmentOf } from "~/languages/language";
 import { useLanguage, useMessages } from "~/languages/messages";
 import { type AppErrorCode, appErrorCode } from "~/platform/errors";
@@ -38,28 +40,22 @@ export function RootError({ error }: { error: unknown }) {
       </main>
     );
   }
+  const onward = signIn
+    ? {
+        label: words.signIn,
+        to: `${href("/:lang?/sign-in", { lang })}?next=${encodeURIComponent(pathname + search)}`,
+      }
+    : { label: words.toPrints, to: href("/:lang?/prints", { lang }) };
   return (
     <main id="content" className="page">
       <title>{title}</title>
-      <section className="window window-pad flow error-page">
-        <h1>{title}</h1>
-        <p className="lead">{text}</p>
-        <p>
-          {signIn ? (
-            <Link
-              className="press press-fill"
-              to={`${href("/:lang?/sign-in", { lang })}?next=${encodeURIComponent(pathname + search)}`}
-            >
-              {words.signIn}
-            </Link>
-          ) : (
-            <Link className="press" to={href("/:lang?/prints", { lang })}>
-              {words.toPrints}
-            </Link>
-          )}{" "}
-          <Link to={href("/:lang?", { lang })}>{words.home}</Link>
-        </p>
-      </section>
+      <Window>
+        <ErrorPage
+          title={title}
+          text={<p className="lead">{text}</p>}
+          actions={[onward, { label: words.home, to: href("/:lang?", { lang }) }]}
+        />
+      </Window>
     </main>
   );
 }

@@ -10,7 +10,7 @@ import { type Capability, can, type Role } from "./permissions";
 export type Access = "anyone" | "nobody" | readonly Capability[];
 
 export type RoutePermission = {
-  /** Pattern as React Router gives it: "/studio/orders/:orderId". */
+  /** The address with its parameters: "/studio/orders/:orderId". */
   pattern: string;
   /** GET and HEAD. */
   see: Access;
@@ -103,7 +103,8 @@ const READS = new Set(["GET", "HEAD"]);
 
 /** Who may ask a route with a method; nobody where the table does not name it. */
 export function accessTo(pattern: string, method: string): Access {
-  const row = BY_PATTERN.get(pattern);
+  // React Router joins the paths of the routes as they stand in `routes.ts`, without a slash before the first.
+  const row = BY_PATTERN.get(pattern.startsWith("/") ? pattern : `/${pattern}`);
   if (row === undefined) return "nobody";
   return READS.has(method.toUpperCase()) ? row.see : row.change;
 }

@@ -18,9 +18,10 @@ export async function loader({ context }: Route.LoaderArgs) {
     if (context.get(visitorContext)?.roles.includes("photographer")) throw redirect(href("/studio"));
     return data(null, { status: 410 });
   }
+  const names = new Intl.DisplayNames("en-GB", { type: "currency" });
   return data({
     zones: ["UTC", ...Intl.supportedValuesOf("timeZone")],
-    currencies: currencyCodes(),
+    currencies: currencyCodes().map((code) => ({ code, name: names.of(code) ?? code })),
     countries: countriesByName("en-GB"),
   });
 }
