@@ -70,14 +70,15 @@ export function CheckoutAddress(props: {
           autoComplete="shipping address-level2"
           required
         />
-        <Field
-          {...form.field("address.region")}
-          label={words.region}
-          hint={words.regionHint}
-          autoComplete="shipping address-level1"
-          required={needsRegion(country)}
-          span
-        />
+        {needsRegion(country) || form.error("address.region") !== undefined ? (
+          <Field
+            {...form.field("address.region")}
+            label={words.region}
+            autoComplete="shipping address-level1"
+            required={needsRegion(country)}
+            span
+          />
+        ) : null}
         <Field
           {...form.field("address.name")}
           label={checkout.parcelName}

@@ -9,6 +9,7 @@ import { useBusy } from "~/components/form/use-busy";
 import { BasketSlip } from "~/components/shop/basket-slip";
 import { CheckoutAddress } from "~/components/shop/checkout-address";
 import { price } from "~/components/shop/edition-view";
+import { deliveryName } from "~/components/shop/order-words";
 import { EmptyState } from "~/components/ui/empty-state";
 import { Notice } from "~/components/ui/notice";
 import { Press, PressLink } from "~/components/ui/press";
@@ -16,7 +17,7 @@ import { Window } from "~/components/ui/window";
 import { reckonedFor } from "~/domain/orders/checkout-form";
 import type { CounterView } from "~/domain/orders/checkout-page.server";
 import { segmentOf } from "~/languages/language";
-import { fill, useLanguage, useMessages } from "~/languages/messages";
+import { count, fill, useLanguage, useMessages } from "~/languages/messages";
 import type { FormProblem } from "~/platform/form-fields";
 
 const FORM = "checkout";
@@ -91,10 +92,24 @@ function CounterForm({ view, answer, countries, title }: CounterProps) {
     );
   return (
     <Window>
-      <h1>{title}</h1>
-      {view.sums === null ? null : <p className="lead">{checkout.intro}</p>}
-      <Problems form={form} />
-      {gone.length === 0 ? null : <Gone titles={gone} total={total} rest={sums !== null} />}
+      <div className="flow">
+        <h1>{title}</h1>
+        {sums === null ? null : (
+          <>
+            <p className="lead">{checkout.intro}</p>
+            <p>
+              {fill(checkout.inAll, {
+                prints: count(language, checkout.sheets, sums.count),
+                way: deliveryName(view.method, view.country, language),
+                total,
+              })}{" "}
+              <a href="#slip">{checkout.seeSlip}</a>
+            </p>
+          </>
+        )}
+        <Problems form={form} />
+        {gone.length === 0 ? null : <Gone titles={gone} total={total} rest={sums !== null} />}
+      </div>
       <Form
         method="post"
         action={href("/:lang?/checkout", { lang })}
@@ -138,7 +153,14 @@ function CounterForm({ view, answer, countries, title }: CounterProps) {
               defaultValue={form.value("method") ?? view.method}
               onChange={(event) => look({ by: event.currentTarget.value })}
               options={[
-                { value: "delivery", name: checkout.byDelivery, more: checkout.byDeliveryMore },
+                {
+                  value: "delivery",
+                  name: checkout.byDelivery,
+                  more: checkout.byDeliveryMore,
+                  ...(view.method === "delivery" && sums.delivery.kind === "quoted"
+                    ? { price: price(sums.delivery.amount, { language, currency: view.currency }) }
+                    : {}),
+                },
                 {
                   value: "collection",
                   name: checkout.byCollection,
@@ -154,7 +176,7 @@ function CounterForm({ view, answer, countries, title }: CounterProps) {
               notDelivered={notDelivered(view, checkout.notDelivered)}
               onCountry={(country) => look({ to: country })}
             />
-            <Fieldset legend={checkout.telephone.replace(/ \(.*/, "")} columns={1}>
+            <Fieldset legend={checkout.moreTitle}>
               <Field
                 {...form.field("telephone")}
                 label={checkout.telephone}

@@ -115,7 +115,7 @@ function Held({ order, seenAt, left, unavailable, seen, problem }: PayPageProps)
         )}
         <p className="note">{pay.pressText}</p>
       </Form>
-      <Form method="post">
+      <Form method="post" className="flow">
         <Press variant="outlined" name="intent" value="give-up">
           {order.pricesToAccept ? pay.priceNo : pay.giveUp}
         </Press>

@@ -12,7 +12,7 @@ export function OrderedSlip({ order }: { order: BuyersOrder }) {
   const shown = { language, currency: order.currency };
   return (
     <Window as="aside" pad="slip" labelledBy="slip">
-      <h2 id="slip">{checkout.order.sums}</h2>
+      <h2 id="slip">{order.state === "awaiting_payment" ? checkout.slip : checkout.order.sums}</h2>
       <OrderSlip
         lines={order.lines.map((line) => ({
           key: line.id,

@@ -7,6 +7,8 @@ export const checkout = {
   orderTitle: "Ihre Bestellung",
   intro:
     "Sehen Sie die Nummern an, sagen Sie, wohin sie gehen, und bezahlen Sie auf der nächsten Seite. Ein Konto brauchen Sie nicht.",
+  inAll: "{prints}. {way}. Zusammen {total}, Steuer enthalten.",
+  seeSlip: "Zum Bestellzettel",
   emptyTitle: "Ihr Korb ist leer",
   empty: "Eine Nummer, die Sie auf der Seite eines Abzugs hineinlegen, finden Sie hier.",
   toPrints: "Zu den Abzügen",
@@ -28,7 +30,6 @@ export const checkout = {
   collected: "Im Atelier abgeholt",
   deliveryOpen: "nicht möglich",
   total: "Zu zahlen",
-  notTaxed: "Zu diesen Beträgen kommt keine Steuer hinzu.",
   taxIncluded: "darin {label}",
   taxName: "MwSt. {rate}",
   exportTax: "MwSt. 0 % (Ausfuhr)",
@@ -41,6 +42,7 @@ export const checkout = {
   emailHint: "Für die Bestätigung, die Ihre Nummern nennt.",
   name: "Name",
   nameHint: "So, wie er auf dem Zertifikat stehen soll.",
+  moreTitle: "Wenn Sie möchten",
   telephone: "Telefon (freiwillig)",
   telephoneHint: "Nur der Zusteller sieht es.",
   signedInAs: "Sie sind als {name} angemeldet. Was wir von Ihnen wissen, ist eingetragen.",
@@ -67,7 +69,6 @@ export const checkout = {
     "Wenn Sie als Verbraucher aus der Ferne kaufen, haben Sie in der Regel 14 Tage ab dem Tag der Ankunft Zeit, ohne Gründe zu widerrufen. Es gilt das Recht Ihres Landes, das Ihnen auch mehr geben kann.",
   totalText: "Die Summe ist endgültig: Versand und jede hier erhobene Steuer sind enthalten.",
   press: "Zahlungspflichtig bestellen: {total}",
-  pressPlain: "Zahlungspflichtig bestellen",
   pressRest: "Den Rest zahlungspflichtig bestellen: {total}",
   busy: "Ihre Nummern werden zurückgelegt…",
 
