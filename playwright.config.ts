@@ -1,8 +1,9 @@
 import { defineConfig } from "@playwright/test";
+import { shopUrl } from "./tests/support/instance";
 
 const report = process.env.E2E_REPORT;
 
-/** `npm test` starts a whole instance and names it here; by hand, name a running one. */
+/** `npm test` starts a whole instance and names its data folder in E2E_DATA_DIR; by hand, that of a running one. */
 export default defineConfig({
   testDir: "tests/e2e",
   forbidOnly: true,
@@ -14,7 +15,7 @@ export default defineConfig({
   reporter: report ? [["list"], ["json", { outputFile: report }]] : [["list"]],
   outputDir: process.env.E2E_OUTPUT || "test-results",
   use: {
-    baseURL: process.env.E2E_BASE_URL || "http://127.0.0.1:3000",
+    baseURL: shopUrl,
     browserName: "chromium",
     locale: "en-GB",
     timezoneId: "Europe/London",
@@ -34,7 +35,12 @@ export default defineConfig({
     },
   },
   projects: [
-    { name: "desk", use: { viewport: { width: 1440, height: 900 } } },
-    { name: "phone", use: { viewport: { width: 390, height: 844 }, hasTouch: true, isMobile: true } },
+    { name: "requests", testMatch: "api/**/*.spec.ts" },
+    { name: "desk", testIgnore: "api/**", use: { viewport: { width: 1440, height: 900 } } },
+    {
+      name: "phone",
+      testMatch: "pages.spec.ts",
+      use: { viewport: { width: 390, height: 844 }, hasTouch: true, isMobile: true },
+    },
   ],
 });
