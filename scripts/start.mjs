@@ -137,8 +137,9 @@ async function start(args) {
   const node = (/** @type {string[]} */ ...rest) => [process.execPath, ...rest];
   const script = (/** @type {string} */ file) => node("--import", "tsx", file);
 
+  /** @returns {Promise<string | undefined>} where its files are, if there is one of our own. */
   async function startDatabase() {
-    if (!local.postgres) return;
+    if (!local.postgres) return undefined;
     await ensureDebianPackages({ say });
     const cluster = openCluster({
       baseDirectory: clusterDirectory,
@@ -161,6 +162,7 @@ async function start(args) {
       dropDatabase(cluster, access);
     }
     setUpDatabase(cluster, access);
+    return cluster.directory;
   }
 
   /** @returns {Promise<void>} */
@@ -238,7 +240,7 @@ async function start(args) {
   const services = packages.then(startServices);
   const build = packages.then(() => (dev ? undefined : ensureBuild(PROJECT, { say, run })));
   const filled = Promise.all([packages, database]).then(fillDatabase);
-  const [buildDirectory] = await Promise.all([build, filled, services]);
+  const [buildDirectory, databaseDirectory] = await Promise.all([build, database, filled, services]);
 
   startChild({
     name: "worker",
@@ -273,7 +275,7 @@ async function start(args) {
   );
   const here = `http://${reachable(host)}:${ports.PORT}`;
   await answers(`${here}/readyz`, "web", () => !ended);
-  await introduce({ here, environment, secrets, dataDirectory, local });
+  await introduce({ here, environment, secrets, dataDirectory, databaseDirectory, local });
   drawDemoScans().catch((error) => {
     if (!ended) say(`the demo's scans were not all drawn: ${error instanceof Error ? error.message : error}`);
   });
@@ -342,10 +344,11 @@ async function answers(address, name, stillRunning) {
  *   environment: Record<string, string>,
  *   secrets: import("./lib/settings.mjs").Secrets,
  *   dataDirectory: string,
+ *   databaseDirectory: string | undefined,
  *   local: ReturnType<typeof localServices>,
  * }} instance
  */
-async function introduce({ here, environment, secrets, dataDirectory, local }) {
+async function introduce({ here, environment, secrets, dataDirectory, databaseDirectory, local }) {
   const base = environment.BASE_URL;
   say("");
   say(`Shop      ${base}`);
@@ -353,6 +356,9 @@ async function introduce({ here, environment, secrets, dataDirectory, local }) {
   if (local.mail)
     say(`E-mail    http://127.0.0.1:${environment.MAIL_PORT}   (whatever the shop sends arrives here)`);
   say(`Data      ${dataDirectory}`);
+  if (databaseDirectory !== undefined && !databaseDirectory.startsWith(dataDirectory)) {
+    say(`Database  ${databaseDirectory}   (PostgreSQL's user cannot enter the folder above)`);
+  }
   say("");
   if (secrets.mode === "studio") {
     await introduceSetup({ here, base, setupCode: secrets.setupCode });

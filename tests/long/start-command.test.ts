@@ -1,4 +1,4 @@
-import { mkdtempSync, readFileSync, rmSync, statSync } from "node:fs";
+import { chmodSync, mkdtempSync, readFileSync, rmSync, statSync } from "node:fs";
 import net from "node:net";
 import { tmpdir } from "node:os";
 import path from "node:path";
@@ -41,6 +41,8 @@ async function newInstance(): Promise<Instance> {
     directory: mkdtempSync(path.join(tmpdir(), "numberleaf-start-")),
     ports: await freePorts(),
   };
+  // As root, the database's user has to pass through.
+  chmodSync(made.directory, 0o711);
   instances.push(made);
   return made;
 }
