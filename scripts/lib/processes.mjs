@@ -90,6 +90,21 @@ export function processesOfInstance(dataDirectory) {
 }
 
 /**
+ * Whether any process was started with this argument.
+ *
+ * @param {string} argument
+ */
+export function isSomeonesArgument(argument) {
+  return processIds().some((pid) => {
+    try {
+      return readFileSync(`/proc/${pid}/cmdline`, "utf8").split("\0").includes(argument) && isRunning(pid);
+    } catch {
+      return false;
+    }
+  });
+}
+
+/**
  * Running PostgreSQL processes that work in a data directory, the first one being the server itself if it is there.
  * PostgreSQL writes its titles over its environment, so it is known by its working directory.
  *

@@ -11,6 +11,7 @@ import {
 } from "node:fs";
 import path from "node:path";
 import { withLock } from "./locks.mjs";
+import { isSomeonesArgument } from "./processes.mjs";
 
 /*
  * Keeps node_modules and the build in step with the source. Each state of the source is built into a folder of its own,
@@ -28,7 +29,7 @@ const SOURCES = [
   "vite.config.ts",
 ];
 
-/** How many builds are kept, the newest ones. */
+/** How many builds are kept, the newest ones; those that a web process serves are kept besides. */
 const KEPT_BUILDS = 4;
 
 /**
@@ -146,5 +147,8 @@ function removeOldBuilds(builds) {
     .filter((name) => /^[0-9a-f]{16}$/.test(name))
     .sort((a, b) => age(b) - age(a))
     .slice(KEPT_BUILDS);
-  for (const name of old) rmSync(path.join(builds, name), { recursive: true, force: true });
+  for (const name of old) {
+    const directory = path.join(builds, name);
+    if (!isSomeonesArgument(directory)) rmSync(directory, { recursive: true, force: true });
+  }
 }

@@ -1,3 +1,4 @@
+import { spawn } from "node:child_process";
 import { mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import path from "node:path";
@@ -76,6 +77,25 @@ test("each state of the source is built once, beside the builds before it", asyn
   expect(new Set(built).size).toBe(5);
   expect(built.every((directory) => directory.startsWith("build/"))).toBe(true);
   expect(readdirSync(path.join(project, "build"))).toHaveLength(4);
+});
+
+test("a build that a web process serves is kept, however many are made after it", async () => {
+  const run = async () => {};
+  write("app/root.tsx", "served");
+  const served = await ensureBuild(project, { say, run });
+  const web = spawn(process.execPath, ["-e", "console.log('up'); setInterval(() => {}, 1000)", served], {
+    stdio: ["ignore", "pipe", "inherit"],
+  });
+  try {
+    await new Promise((resolve) => web.stdout.once("data", resolve));
+    for (const state of ["one", "two", "three", "four", "five"]) {
+      write("app/root.tsx", state);
+      await ensureBuild(project, { say, run });
+    }
+    expect(readdirSync(path.join(project, "build"))).toContain(path.basename(served));
+  } finally {
+    web.kill("SIGKILL");
+  }
 });
 
 test("a build that was interrupted is made again", async () => {
