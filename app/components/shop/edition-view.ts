@@ -53,7 +53,9 @@ export function foreEdge(edition: ShownEdition, shown: Pick<Shown, "language" | 
 function leaf(copy: ShownEdition["copies"][number], edition: ShownEdition, language: Language): LeafCopy {
   const { shop } = messagesOf(language);
   const next = copy.run === "numbered" && copy.number === edition.nextNumber && edition.sale === "now";
-  return { ...copy, word: next ? shop.next : shop[copy.placement], next };
+  // A proof outside the run that has not gone is with the studio; it cannot be bought here.
+  const word = copy.run !== "numbered" && copy.placement === "free" ? shop.withTheStudio : shop[copy.placement];
+  return { ...copy, word: next ? shop.next : word, next };
 }
 
 /** The rows of the number sheet: one for each step of a format's ladder. */

@@ -85,7 +85,7 @@ export function EditionFormat({
           blank="Another size, written below"
           options={SHEET_GROUPS}
         />
-        <div className="pair span" data-out={sheet === "" ? undefined : ""}>
+        <div className="two-sizes span" data-out={sheet === "" ? undefined : ""}>
           <Field label="Sheet width" {...millimetres} {...field("sheetWidth", row.sheetWidth)} />
           <Field
             label="Sheet height"
@@ -94,11 +94,11 @@ export function EditionFormat({
             {...field("sheetHeight", row.sheetHeight)}
           />
         </div>
-        <div className="pair span">
+        <div className="two-sizes span">
           <Field label="Image width" {...millimetres} {...field("imageWidth", row.imageWidth)} />
           <Field label="Image height" {...millimetres} {...field("imageHeight", row.imageHeight)} />
         </div>
-        <div className="pair span">
+        <div className="two-sizes span">
           <Field
             label="Smallest margin"
             hint="For fitting the picture into the sheet."

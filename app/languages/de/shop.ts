@@ -88,6 +88,7 @@ export const shop = {
   free: "frei",
   held: "zurückgelegt",
   gone: "vergeben",
+  withTheStudio: "beim Atelier",
   next: "nächste",
   freeText: "ein leeres Blatt: es ist zu kaufen",
   heldText: "gefaltete Ecke: für jemanden an der Kasse zurückgelegt",

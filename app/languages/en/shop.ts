@@ -87,6 +87,7 @@ export const shop = {
   free: "free",
   held: "held",
   gone: "gone",
+  withTheStudio: "with the studio",
   next: "next",
   freeText: "a bare sheet: it can be bought",
   heldText: "corner folded: set aside for someone at payment",
