@@ -42,14 +42,16 @@ export function CheckedCopySheet({ copy }: { copy: CheckedCopy }) {
           }}
         />
         <Window as="aside" pad="slip">
-          <h1>
-            {copy.mark} {print.title}
-          </h1>
-          <p className="lead">{shop.checkFound}.</p>
-          <p className="fig">{copy.code}</p>
-          <Notice kind="note" title={shop.checkTitle} level={2}>
-            <p>{shop.checkCaution}</p>
-          </Notice>
+          <div className="flow">
+            <h1>
+              {copy.mark} {print.title}
+            </h1>
+            <p className="lead">{shop.checkFound}.</p>
+            <p className="fig">{copy.code}</p>
+            <Notice kind="note" title={words.caution}>
+              <p>{shop.checkCaution}</p>
+            </Notice>
+          </div>
         </Window>
       </div>
       <Window labelledBy="copy">

@@ -2,10 +2,10 @@ import { Form } from "react-router";
 import { Field } from "~/components/form/field";
 import { formState } from "~/components/form/form-state";
 import { Problems } from "~/components/form/problems";
+import { addressLines } from "~/components/shop/order-words";
 import { Facts } from "~/components/ui/facts";
 import { Press } from "~/components/ui/press";
 import type { BuyersOrder } from "~/domain/orders/order-page.server";
-import { countryName } from "~/domain/people/countries";
 import { LANGUAGE_TAG } from "~/languages/language";
 import { fill, useLanguage, useMessages } from "~/languages/messages";
 import type { FormProblem } from "~/platform/form-fields";
@@ -17,28 +17,17 @@ export function OrderBuyer({ order, problem }: Props) {
   return order.buyer === null ? (
     <AskPostcode order={order} problem={problem} />
   ) : (
-    <>
+    <div className="flow">
       <BuyerFacts order={order} buyer={order.buyer} />
       {order.access === "paid" && order.state === "paid" ? <CorrectEmail problem={problem} /> : null}
-    </>
+    </div>
   );
 }
 
 function BuyerFacts({ order, buyer }: { order: BuyersOrder; buyer: NonNullable<BuyersOrder["buyer"]> }) {
   const { order: words } = useMessages().checkout;
   const tag = LANGUAGE_TAG[useLanguage()];
-  const { address } = buyer;
-  const lines =
-    address === null
-      ? []
-      : [
-          address.name,
-          address.line1,
-          address.line2,
-          [address.postcode, address.city].filter(Boolean).join(" "),
-          address.region,
-          countryName(address.country, tag),
-        ].filter((line) => line !== undefined && line !== "");
+  const lines = buyer.address === null ? [] : addressLines(buyer.address, tag);
   return (
     <Facts
       items={[
@@ -70,7 +59,7 @@ function AskPostcode({ order, problem }: Props) {
   const form = formState(asked, {}, { form: "postcode" });
   if (order.deliveryMethod !== "delivery") return <p>{words.buyerHiddenCollect}</p>;
   return (
-    <>
+    <div className="flow">
       <p>{words.buyerHidden}</p>
       <Problems form={form} />
       <Form method="post" className="ask">
@@ -85,7 +74,7 @@ function AskPostcode({ order, problem }: Props) {
           {words.postcodePress}
         </Press>
       </Form>
-    </>
+    </div>
   );
 }
 

@@ -64,8 +64,10 @@ export function OrderPage({ order, hearing, corrected, signedIn, problem, token 
       </div>
       <Window labelledBy="where">
         <Part headingId="where" title={words.where}>
-          <OrderWhere order={order} />
-          <OrderRefunds order={order} />
+          <div className="flow">
+            <OrderWhere order={order} />
+            <OrderRefunds order={order} />
+          </div>
         </Part>
       </Window>
       <Window labelledBy="buyer">
@@ -123,7 +125,7 @@ function Copy({ line, signature }: { line: BuyersOrder["lines"][number]; signatu
         {words.lineState[line.state]}
         {line.checkCode === null ? null : (
           <>
-            {". "}
+            {" "}
             {words.checkCode} <span className="fig nowrap">{line.checkCode}</span>.{" "}
             <Link to={href("/:lang?/check/:code", { lang, code: line.checkCode })}>
               {fill(words.checkLink, { mark: line.mark })}

@@ -1,6 +1,7 @@
 import { price, type Shown } from "~/components/shop/edition-view";
 import type { SlipSum } from "~/components/shop/order-slip";
 import type { TaxSum } from "~/domain/orders/tax-sums";
+import type { Address } from "~/domain/people/address";
 import { countryName } from "~/domain/people/countries";
 import { LANGUAGE_TAG, type Language } from "~/languages/language";
 import { count, fill, messagesOf } from "~/languages/messages";
@@ -76,4 +77,23 @@ export function numberOfCopies(n: number, language: Language): string {
 /** A sum of an order as a letter writes it, always with its decimals: it is a receipt. */
 export function orderAmount(amount: number, currency: string, language: Language): string {
   return formatMoney({ amount, currency: currencyCode(currency) }, LANGUAGE_TAG[language]);
+}
+
+/** Countries that write the town before the postcode. From memory of the Universal Postal Union's addressing systems. */
+const TOWN_FIRST: ReadonlySet<string> = new Set("AU CA GB IE IN KR NZ SG US".split(" "));
+
+/** A postal address in lines, as its country writes town and postcode, with the country's name. */
+export function addressLines(address: Address, languageTag: string): string[] {
+  const town = TOWN_FIRST.has(address.country)
+    ? [address.city, address.region, address.postcode]
+    : [address.postcode, address.city];
+  const region = TOWN_FIRST.has(address.country) ? undefined : address.region;
+  return [
+    address.name,
+    address.line1,
+    address.line2,
+    town.filter(Boolean).join(" "),
+    region,
+    countryName(address.country, languageTag),
+  ].filter((line) => line !== undefined && line !== "");
 }

@@ -162,11 +162,11 @@ export const checkout = {
     yourNumbers: "Die Nummern",
     number: "Nummer {mark}",
     lineState: {
-      held: "für Sie zurückgelegt",
-      sold: "gehört Ihnen",
-      offered: "Ihnen wird eine andere Nummer angeboten",
-      released: "nicht mehr zurückgelegt",
-      refunded: "Geld zurückgegeben",
+      held: "Für Sie zurückgelegt.",
+      sold: "Gehört Ihnen.",
+      offered: "Ihnen wird eine andere Nummer angeboten.",
+      released: "Nicht mehr zurückgelegt.",
+      refunded: "Das Geld wurde zurückgegeben.",
     },
     checkCode: "Prüfcode",
     checkLink: "{mark} im Auflagenbuch prüfen",
@@ -246,6 +246,7 @@ export const checkout = {
   },
 
   check: {
+    caution: "Ein Code ist noch kein Beweis",
     codeHint: "Zwölf Zeichen, wie auf dem Zertifikat oder der Bestellseite.",
     notFound: "Kein Exemplar im Auflagenbuch hat diesen Code.",
     wrong: "Ein Prüfcode hat zwölf Buchstaben und Ziffern. Bitte sehen Sie ihn noch einmal an.",

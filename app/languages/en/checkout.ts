@@ -158,11 +158,11 @@ export const checkout = {
     yourNumbers: "The numbers",
     number: "Number {mark}",
     lineState: {
-      held: "held for you",
-      sold: "yours",
-      offered: "another number is offered to you",
-      released: "not held any more",
-      refunded: "money given back",
+      held: "Held for you.",
+      sold: "Yours.",
+      offered: "Another number is offered to you.",
+      released: "Not held any more.",
+      refunded: "Its money was given back.",
     },
     checkCode: "Check code",
     checkLink: "Check {mark} in the edition book",
@@ -242,6 +242,7 @@ export const checkout = {
   },
 
   check: {
+    caution: "A code is not yet a proof",
     codeHint: "Twelve characters, as on the certificate or the order page.",
     notFound: "No copy in the edition book has this code.",
     wrong: "A check code has twelve letters and figures. Please look at it again.",
