@@ -55,7 +55,12 @@ export async function findLostImaging(): Promise<void> {
       .where(and(eq(scans.state, "ready"), unfinished(scans.proofState))),
   );
   const prints = await idsOf(
-    db.select({ id: printPictures.id }).from(printPictures).where(unfinished(printPictures.proofState)),
+    db
+      .select({ id: printPictures.id })
+      .from(printPictures)
+      // The demo's prints are there before their scans are drawn.
+      .innerJoin(scans, and(eq(scans.id, printPictures.scanId), eq(scans.state, "ready")))
+      .where(unfinished(printPictures.proofState)),
   );
   await putRight("check-scan", "scanId", checking);
   await putRight("build-proofs", "scanId", building);
