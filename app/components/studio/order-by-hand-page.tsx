@@ -5,7 +5,7 @@ import { Field, TextArea } from "~/components/form/field";
 import { Fieldset } from "~/components/form/fieldset";
 import { formState } from "~/components/form/form-state";
 import { Problems } from "~/components/form/problems";
-import { CountrySelect, Select } from "~/components/form/select";
+import { Select } from "~/components/form/select";
 import { price } from "~/components/shop/edition-view";
 import { BenchHead } from "~/components/studio/bench";
 import { EmptyState } from "~/components/ui/empty-state";
@@ -30,7 +30,7 @@ const LINES = [0, 1, 2];
 /** An order made at a fair, in the studio or by letter. */
 export function OrderByHandPage(props: OrderByHandPageProps) {
   const form = formState(props.problem, {
-    country: props.home,
+    "address.country": props.home,
     method: "handed_over",
     payment: "cash",
     days: "7",
@@ -104,7 +104,7 @@ export function OrderByHandPage(props: OrderByHandPageProps) {
             <Field label="E-mail" type="email" autoComplete="off" {...form.field("email")} />
             <Field label="Telephone" type="tel" autoComplete="off" {...form.field("telephone")} />
           </Fieldset>
-          <Fieldset legend="How it reaches them" columns={2}>
+          <Fieldset legend="How it reaches them">
             <Choices
               name="method"
               legend="How it reaches them"
@@ -116,16 +116,15 @@ export function OrderByHandPage(props: OrderByHandPageProps) {
                 { value: "delivery", name: "Sent to the address below" },
               ]}
             />
-            <CountrySelect
-              label="The buyer's country"
-              name="country"
-              value={form.value("country") ?? props.home}
-              error={form.error("country")}
-              countries={props.countries}
-            />
+          </Fieldset>
+          <Fieldset
+            legend="The buyer's address"
+            hint="The country decides the tax; the rest is needed when it is sent."
+            columns={2}
+          >
             <AddressFields form={form} countries={props.countries} required={false} />
           </Fieldset>
-          <Fieldset legend="How it is paid" columns={2}>
+          <Fieldset legend="How it is paid">
             <Choices
               name="payment"
               legend="How it is paid"

@@ -39,11 +39,11 @@ const STEPS = [
 
 /** The queue of sheets to be printed, checked and signed, grouped by what is to be done and by paper. */
 export function PrintRoomPage({ sheets, done, mayWork, mayOrders, problem }: PrintRoomPageProps) {
-  const form = formState(problem, {}, { form: "print-room" });
+  const form = formState(problem, {}, { form: "main" });
   const said = DONE[done ?? ""];
   const toPrint = sheets.filter((s) => s.making === "to_print").length;
   return (
-    <div id="print-room">
+    <>
       <title>Print room</title>
       <BenchHead
         title="Print room"
@@ -121,7 +121,7 @@ export function PrintRoomPage({ sheets, done, mayWork, mayOrders, problem }: Pri
         Blades: cut away from your hand, with a guarded straightedge and a fresh blade. Spray and varnish:
         open air or extraction only, no flame, and a suitable respirator. Read the maker’s safety sheet.
       </p>
-    </div>
+    </>
   );
 }
 

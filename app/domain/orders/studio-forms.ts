@@ -53,8 +53,9 @@ export const orderByHandForm = z
     ).default(null),
     telephone: optionalText(40),
     method: z.enum(["delivery", "collection", "handed_over"], "Choose how it reaches the buyer."),
-    country: z.string().refine(isCountryCode, "Choose a country."),
-    address: z.record(z.string(), z.string()).default({}),
+    address: z
+      .object({ country: z.string().refine(isCountryCode, "Choose a country.") })
+      .catchall(z.string()),
     payment: z.enum(["pay_link", "transfer", "cash"], "Choose how it is paid."),
     days: z.string().default("7"),
     receipt: optionalText(80),

@@ -36,7 +36,7 @@ export async function action({ request, context }: Route.ActionArgs) {
   const { value } = form;
   let address: Address | null = null;
   if (value.method === "delivery") {
-    const checked = handAddress.safeParse({ ...value.address, country: value.country });
+    const checked = handAddress.safeParse(value.address);
     if (!checked.success) {
       const words: Record<string, string> = messagesOf("en").account.addressProblems;
       return formProblem(
@@ -81,7 +81,7 @@ export async function action({ request, context }: Route.ActionArgs) {
         address === null
           ? { method: value.method === "collection" ? "collection" : "handed_over" }
           : { method: "delivery", address },
-      country: value.country,
+      country: value.address.country,
       language: "en",
       studioNote: value.studioNote,
       payment:
@@ -104,7 +104,7 @@ export async function action({ request, context }: Route.ActionArgs) {
     }
     case "not_delivered":
       return formProblem(form, {
-        country: [
+        "address.country": [
           "The studio's delivery prices do not reach this country or weight. Hand it over, or add a price in the settings.",
         ],
       });
