@@ -19,8 +19,8 @@ export type FrameShape =
   | "8x10";
 
 export type ContactFrame = {
-  /** The number burnt into the rebate. */
-  number: number;
+  /** The number burnt into the rebate: "7", "12A". */
+  number: number | string;
   state: FrameState;
   /** Written in the window until there is a picture: "waits", "68 %", "Refused". */
   says?: string;
@@ -64,7 +64,7 @@ export function ContactSheet({ frames, shape, rebate, label }: ContactSheetProps
   return (
     <ol className="contact" data-shape={shape} aria-label={label}>
       {frames.map((frame) => (
-        <li key={frame.number} className="frame" data-state={frame.state}>
+        <li key={frame.to ?? frame.number} className="frame" data-state={frame.state}>
           <div className="frame-film">
             <p className="rebate" aria-hidden="true">
               <span>{rebate.roll}</span>
@@ -86,7 +86,9 @@ export function ContactSheet({ frames, shape, rebate, label }: ContactSheetProps
                 <span className="vh">Frame </span>
                 {frame.number}
               </span>
-              <span aria-hidden="true">{frame.number}A</span>
+              <span aria-hidden="true">
+                {/^\d+$/.test(String(frame.number)) ? `${frame.number}A` : frame.number}
+              </span>
             </p>
           </div>
           <FrameNotes frame={frame} />

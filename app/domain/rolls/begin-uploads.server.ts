@@ -7,7 +7,7 @@ import { now } from "~/platform/clock";
 import { AppError } from "~/platform/errors";
 import { newId } from "~/platform/ids.server";
 import { inFileOrder } from "./file-order";
-import type { BegunScan } from "./upload-messages";
+import type { BegunScan } from "./uploading";
 
 export type AnnouncedFile = { name: string; size: number };
 

@@ -34,6 +34,16 @@ export const newRollForm = z.object({ ...rollFields, id: z.uuid() });
 
 export const editRollForm = z.object({ ...rollFields, intent: z.literal("edit") });
 
+/** Everything that can be done to a roll from its page. */
+export const rollForm = z.discriminatedUnion("intent", [
+  editRollForm,
+  z.object({ intent: z.literal("retry") }),
+]);
+
+export function numberTaken(number: number): string {
+  return `There is a roll ${number} already: give this one another number.`;
+}
+
 export type RollFields = z.output<typeof editRollForm>;
 
 /** Formats offered by the form. */

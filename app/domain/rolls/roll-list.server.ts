@@ -69,3 +69,13 @@ export async function nextRollNumber(): Promise<number> {
   const [row] = await db.select({ last: max(rolls.number) }).from(rolls);
   return (row?.last ?? 0) + 1;
 }
+
+/** What the latest roll was made with, to begin the next one's form with. */
+export async function usualRoll(): Promise<{ filmFormat: string; camera: string; film: string }> {
+  const [last] = await db
+    .select({ filmFormat: rolls.filmFormat, camera: rolls.camera, film: rolls.film })
+    .from(rolls)
+    .orderBy(desc(rolls.number))
+    .limit(1);
+  return last ?? { filmFormat: "120-6x6", camera: "", film: "" };
+}

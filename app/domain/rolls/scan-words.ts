@@ -15,6 +15,8 @@ export type FrameStanding = {
   words: string;
   /** A sentence where there is more to be said: the reason of a refusal, what failed. */
   more: string | null;
+  /** It was announced and has not arrived. */
+  awaited: boolean;
   /** Somebody has to look at it. */
   needsLook: boolean;
   /** The worker is or will be at it: the page looks again by itself. */
@@ -23,7 +25,7 @@ export type FrameStanding = {
   canRetry: boolean;
 };
 
-const quiet = { more: null, needsLook: false, pending: false, canRetry: false };
+const quiet = { more: null, awaited: false, needsLook: false, pending: false, canRetry: false };
 
 /** What the newest scan of a frame comes to; null where it has none. */
 export function frameStanding(scan: ScanStanding | null): FrameStanding {
@@ -33,6 +35,7 @@ export function frameStanding(scan: ScanStanding | null): FrameStanding {
       return {
         ...quiet,
         state: "queued",
+        awaited: true,
         says: "not here",
         words: "Has not arrived",
         more: "Choose its file again to send it.",
@@ -88,7 +91,7 @@ function proofStanding(scan: ScanStanding): FrameStanding {
 }
 
 function failed(says: string, words: string, failure: string | null): FrameStanding {
-  return { state: "refused", says, words, more: failure, needsLook: true, pending: false, canRetry: true };
+  return { ...quiet, state: "refused", says, words, more: failure, needsLook: true, canRetry: true };
 }
 
 const figures = new Intl.NumberFormat("en-GB");
