@@ -185,6 +185,8 @@ async function ifNobodyElse(name: string, work: () => Promise<void>): Promise<vo
 /** A connection of its own for locks that last as long as a job: those of a pooled one would be lost from sight. */
 class LockConnection {
   #client: Promise<pg.Client> | undefined;
+  /** One connection asks one thing at a time. */
+  readonly #inTurn = oneAtATime();
 
   async #connection(): Promise<pg.Client> {
     this.#client ??= (async () => {
@@ -208,18 +210,16 @@ class LockConnection {
   }
 
   async hold(jobId: string): Promise<void> {
-    await (await this.#connection()).query("select pg_advisory_lock_shared($1, hashtext($2))", [
-      RUNNING,
-      jobId,
-    ]);
+    await this.#ask("select pg_advisory_lock_shared($1, hashtext($2))", jobId);
+  }
+
+  #ask(sql: string, jobId: string): Promise<unknown> {
+    return this.#inTurn(async () => (await this.#connection()).query(sql, [RUNNING, jobId]));
   }
 
   async release(jobId: string): Promise<void> {
     try {
-      await (await this.#connection()).query("select pg_advisory_unlock_shared($1, hashtext($2))", [
-        RUNNING,
-        jobId,
-      ]);
+      await this.#ask("select pg_advisory_unlock_shared($1, hashtext($2))", jobId);
     } catch (error) {
       // With the connection the lock has gone as well.
       logger.warn({ err: error }, "a lock went with its connection");
