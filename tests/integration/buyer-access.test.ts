@@ -1,5 +1,5 @@
 import { db, pool } from "db/client.server";
-import { accounts, copies, orders, parties } from "db/schema/schema";
+import { accounts, copies, emails, orders, parties } from "db/schema/schema";
 import { eq } from "drizzle-orm";
 import { afterAll, beforeEach, describe, expect, test } from "vitest";
 import type { Asking } from "~/domain/orders/buyer-access";
@@ -111,6 +111,10 @@ describe("what an order's page is given", () => {
     expect(await orderIdOfToken(first)).toBeNull();
     expect(await orderIdOfToken(second)).toBe(orderId);
     expect(await orderIdOfToken(`${second}x`)).toBeNull();
+    // A letter made from now on carries the new link: it may go to the right address only.
+    const waiting = await db.select().from(emails).where(eq(emails.state, "waiting"));
+    const toBuyer = waiting.filter((e) => e.kind !== "new-order").map((e) => [e.kind, e.recipient]);
+    expect(toBuyer).toEqual([["order-confirmation", "tobias.w@buyers.example"]]);
   });
 });
 

@@ -1,6 +1,7 @@
 import { inTransaction } from "db/client.server";
-import { orderEvents, orders } from "db/schema/schema";
-import { eq } from "drizzle-orm";
+import { emails, orderEvents, orders } from "db/schema/schema";
+import { and, eq, ne } from "drizzle-orm";
+import { NO_LONGER_NEEDED } from "~/emails/send.server";
 import { now } from "~/platform/clock";
 import { newLinkToken } from "~/platform/ids.server";
 import { oweConfirmation } from "./settle.server";
@@ -22,6 +23,17 @@ export async function correctEmail(orderId: string, email: string): Promise<stri
     await tx.db
       .insert(orderEvents)
       .values({ orderId, kind: "email_corrected", at: now(), visibleToBuyer: true });
+    // Letters that still wait would be made with the new link: none of them may go to the mistyped address.
+    const waiting = and(
+      eq(emails.orderId, orderId),
+      eq(emails.state, "waiting"),
+      ne(emails.kind, "new-order"),
+    );
+    await tx.db
+      .update(emails)
+      .set({ state: "failed", failure: NO_LONGER_NEEDED })
+      .where(and(waiting, eq(emails.kind, "order-confirmation")));
+    await tx.db.update(emails).set({ recipient: email }).where(waiting);
     await oweConfirmation(tx, changed);
     return link.token;
   });

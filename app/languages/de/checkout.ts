@@ -26,7 +26,7 @@ export const checkout = {
   skipped: "In Bestellung und Summe ist er nicht enthalten.",
   lineWords: "{paper}, Blatt {width} × {height} mm",
   sheets: { one: "Ein Abzug", other: "{n} Abzüge" },
-  deliveryTo: "Versand nach {country}",
+  deliveryTo: "Versand: {country}",
   collected: "Im Atelier abgeholt",
   deliveryOpen: "nicht möglich",
   total: "Zu zahlen",
