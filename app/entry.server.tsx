@@ -1,6 +1,6 @@
+import { PassThrough } from "node:stream";
 import { createReadableStreamFromReadable } from "@react-router/node";
 import { isbot } from "isbot";
-import { PassThrough } from "node:stream";
 import { renderToPipeableStream } from "react-dom/server";
 import {
   type EntryContext,

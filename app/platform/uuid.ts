@@ -3,8 +3,7 @@ import { AppError } from "./errors";
 /** Whether a text from an address or a form can be an id at all; PostgreSQL would answer anything else with an error. */
 export function isUuid(text: string | null | undefined): text is string {
   return (
-    typeof text === "string" &&
-    /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i.test(text)
+    typeof text === "string" && /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i.test(text)
   );
 }
 

@@ -145,16 +145,14 @@ async function makeAccounts(): Promise<void> {
         .insert(parties)
         .values({ id: partyId, name: login.name, email: login.email, createdAt: day("2024-01-08") })
         .onConflictDoNothing();
-      await tx.db
-        .insert(accounts)
-        .values({
-          id: accountId,
-          partyId,
-          email: login.email,
-          passwordHash,
-          emailVerifiedAt: day("2024-01-08"),
-          createdAt: day("2024-01-08"),
-        });
+      await tx.db.insert(accounts).values({
+        id: accountId,
+        partyId,
+        email: login.email,
+        passwordHash,
+        emailVerifiedAt: day("2024-01-08"),
+        createdAt: day("2024-01-08"),
+      });
       await tx.db.insert(accountRoles).values({ accountId, role: login.role });
     });
   }

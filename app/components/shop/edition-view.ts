@@ -54,7 +54,8 @@ function leaf(copy: ShownEdition["copies"][number], edition: ShownEdition, langu
   const { shop } = messagesOf(language);
   const next = copy.run === "numbered" && copy.number === edition.nextNumber && edition.sale === "now";
   // A proof outside the run that has not gone is with the studio; it cannot be bought here.
-  const word = copy.run !== "numbered" && copy.placement === "free" ? shop.withTheStudio : shop[copy.placement];
+  const word =
+    copy.run !== "numbered" && copy.placement === "free" ? shop.withTheStudio : shop[copy.placement];
   return { ...copy, word: next ? shop.next : word, next };
 }
 
