@@ -17,4 +17,5 @@ export type BuiltEmail = {
 export type EmailBuilder<K extends EmailKind> = (
   payload: EmailPayload<K>,
   language: Language,
+  recipient: string,
 ) => Promise<BuiltEmail | null>;

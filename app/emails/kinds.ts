@@ -9,7 +9,8 @@ import { z } from "zod";
  */
 export const EMAIL_PAYLOADS = {
   "verify-email": z.object({ tokenId: z.uuid() }),
-  "reset-password": z.object({ tokenId: z.uuid() }),
+  /** To whatever address was typed: whether it has an account is found out when the e-mail is made, and only then. */
+  "reset-password": z.object({ requestId: z.uuid() }),
   /** To somebody who signed up with an address that has an account already. */
   "account-exists": z.object({ accountId: z.uuid() }),
   /** To the former address of an account whose e-mail was changed. */

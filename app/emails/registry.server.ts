@@ -15,13 +15,13 @@ import { resetPassword } from "./reset-password";
 import { verifyEmail } from "./verify-email";
 
 /** Checks a row's payload, then builds. */
-type Build = (payload: unknown, language: Language) => Promise<BuiltEmail | null>;
+type Build = (payload: unknown, language: Language, recipient: string) => Promise<BuiltEmail | null>;
 
 function from<S extends z.ZodType>(
   schema: S,
-  build: (payload: z.output<S>, language: Language) => Promise<BuiltEmail | null>,
+  build: (payload: z.output<S>, language: Language, recipient: string) => Promise<BuiltEmail | null>,
 ): Build {
-  return (payload, language) => build(schema.parse(payload), language);
+  return (payload, language, recipient) => build(schema.parse(payload), language, recipient);
 }
 
 /** One builder (see `built-email.ts`) for every kind in `kinds.ts`. */

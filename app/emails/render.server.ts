@@ -19,9 +19,10 @@ export async function makeEmail(row: {
   kind: string;
   payload: unknown;
   language: Language;
+  recipient: string;
 }): Promise<MadeEmail | null> {
   if (!isEmailKind(row.kind)) throw new Error(`there is no e-mail of the kind ${row.kind}`);
-  const built = await BUILDERS[row.kind](row.payload, row.language);
+  const built = await BUILDERS[row.kind](row.payload, row.language, row.recipient);
   if (built === null) return null;
   const { subject, body, replyTo } = built;
   const html = await render(body);

@@ -1,5 +1,5 @@
 import { href } from "react-router";
-import { tokenForEmail } from "~/domain/people/tokens.server";
+import { resetTokenFor } from "~/domain/people/reset-password.server";
 import { segmentOf } from "~/languages/language";
 import { fill, messagesOf } from "~/languages/messages";
 import { linkToken } from "~/platform/ids.server";
@@ -7,9 +7,9 @@ import type { EmailBuilder } from "./built-email";
 import { EmailLayout, EmailPress, EmailText } from "./layout";
 import { emailStudio, pageAddress } from "./studio.server";
 
-/** The link to a new password. */
-export const resetPassword: EmailBuilder<"reset-password"> = async ({ tokenId }, language) => {
-  const found = await tokenForEmail(tokenId);
+/** The link to a new password; nothing for an address that has no account. */
+export const resetPassword: EmailBuilder<"reset-password"> = async ({ requestId }, language, recipient) => {
+  const found = await resetTokenFor(requestId, recipient);
   if (found === null) return null;
   const { resetPassword: w, common } = messagesOf(language).emails;
   const token = linkToken(found.purpose, found.seed);

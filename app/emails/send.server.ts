@@ -42,7 +42,8 @@ export async function sendOwedEmail(emailId: string, { last }: { last: boolean }
       if (made === null) {
         await tx.db
           .update(emails)
-          .set({ state: "failed", failure: NO_LONGER_NEEDED })
+          // Whose address it was is nobody's business any more: perhaps only somebody's mistake.
+          .set({ state: "failed", failure: NO_LONGER_NEEDED, recipient: "" })
           .where(eq(emails.id, emailId));
         return null;
       }

@@ -1,5 +1,5 @@
 import argon2 from "argon2";
-import { AppError } from "~/platform/errors";
+import { turns } from "~/platform/turns";
 
 /** Source: RFC 9106, section 4, second recommended option: argon2id, t=3, p=4, m=2^16 KiB, 128-bit salt, 256-bit tag. */
 export const ARGON2ID = {
@@ -13,39 +13,16 @@ export const ARGON2ID = {
 const SALT_BYTES = 16;
 
 /** Each hash takes 64 MiB and all cores: more than two at once would only be slower, and could exhaust memory. */
-const AT_ONCE = 2;
-const MOST_WAITING = 60;
-
-let running = 0;
-const waiting: (() => void)[] = [];
-
-async function inTurn<T>(work: () => Promise<T>): Promise<T> {
-  if (running < AT_ONCE) {
-    running++;
-  } else {
-    if (waiting.length >= MOST_WAITING) {
-      throw new AppError("unavailable", "too many passwords are being checked", { retryAfter: 10 });
-    }
-    // Whoever finishes hands its place on, so the count stays as it is.
-    await new Promise<void>((resolve) => waiting.push(resolve));
-  }
-  try {
-    return await work();
-  } finally {
-    const next = waiting.shift();
-    if (next === undefined) running--;
-    else next();
-  }
-}
+const hashing = turns({ atOnce: 2, mostWaiting: 60, retryAfter: 10 });
 
 /** How many hashes are being made, and how many wait for it. */
 export function passwordQueue(): { running: number; waiting: number } {
-  return { running, waiting: waiting.length };
+  return hashing.standing();
 }
 
 /** A password's hash in PHC string format. Throws AppError `unavailable` when too many wait already. */
 export function hashPassword(password: string): Promise<string> {
-  return inTurn(() => argon2.hash(password, ARGON2ID));
+  return hashing.take(() => argon2.hash(password, ARGON2ID));
 }
 
 // Right parameters, but no password has this tag: it is checked where there is no account, so that a wrong
@@ -59,7 +36,7 @@ const NOBODY = `$argon2id$v=19$m=${ARGON2ID.memoryCost},t=${ARGON2ID.timeCost},p
  * Throws AppError `unavailable` when too many wait already.
  */
 export async function verifyPassword(hash: string | null, password: string): Promise<boolean> {
-  const matches = await inTurn(() => argon2.verify(hash ?? NOBODY, password));
+  const matches = await hashing.take(() => argon2.verify(hash ?? NOBODY, password));
   return hash !== null && matches;
 }
 

@@ -4,34 +4,54 @@ import { eq } from "drizzle-orm";
 import { owe } from "~/emails/owe.server";
 import type { Language } from "~/languages/language";
 import { now } from "~/platform/clock";
+import { newId } from "~/platform/ids.server";
 import { evenly } from "./even-time.server";
 import { findAccountByEmail } from "./find-account.server";
 import { hashPassword } from "./passwords.server";
 import { endSessions, type StartedSession, startSession } from "./sessions.server";
-import { endTokens, findToken, issueToken, useToken } from "./tokens.server";
+import {
+  endTokens,
+  findToken,
+  issueToken,
+  type TokenForEmail,
+  tokenExists,
+  tokenForEmail,
+  useToken,
+} from "./tokens.server";
 
-/** Well above what the work takes for an address that has an account (milliseconds). */
-const EVEN_TIME = 400;
+/** Well above what the work takes (milliseconds). */
+const EVEN_TIME = 150;
 
 /**
- * Owes a link to a new password, if the address has an account. The answer, and how long it takes, are the same
- * where it has none.
+ * Takes a wish for a new password. Exactly the same is done for every address, and the answer never comes sooner than a
+ * set time: an e-mail is owed, and whether there is an account is looked up when that is made, by the worker.
  */
 export async function requestReset(email: string, language: Language): Promise<void> {
+  const requestId = newId();
   await evenly(EVEN_TIME, () =>
-    inTransaction(async (tx) => {
-      const account = await findAccountByEmail(email, tx);
-      if (account === null || account.disabledAt !== null) return;
-      const tokenId = await issueToken(tx, account.id, "reset_password");
-      await owe(tx, {
+    inTransaction((tx) =>
+      owe(tx, {
         kind: "reset-password",
-        dedupeKey: `reset-password:${tokenId}`,
-        recipient: account.email,
+        dedupeKey: `reset-password:${requestId}`,
+        recipient: email,
         language,
-        payload: { tokenId },
-      });
-    }),
+        payload: { requestId },
+      }),
+    ),
   );
+}
+
+/**
+ * The link of a wish for a new password, for its e-mail: made at the first try, the same at any further one. Null where
+ * the address has no account, or the link has been used or replaced meanwhile.
+ */
+export async function resetTokenFor(requestId: string, email: string): Promise<TokenForEmail | null> {
+  const account = await findAccountByEmail(email);
+  if (account === null || account.disabledAt !== null) return null;
+  await inTransaction(async (tx) => {
+    if (!(await tokenExists(tx, requestId))) await issueToken(tx, account.id, "reset_password", requestId);
+  });
+  return tokenForEmail(requestId);
 }
 
 export type ResetOutcome = { code: "reset"; session: StartedSession; accountId: string } | { code: "gone" };

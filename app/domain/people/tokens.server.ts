@@ -17,11 +17,15 @@ export const TOKEN_LASTS: Record<TokenPurpose, number> = {
  * Makes a single-use link for an account; earlier ones for the same purpose end. Returns the row's id, from which
  * the e-mail makes the link again: only its hash can be looked up.
  */
-export async function issueToken(tx: Tx, accountId: string, purpose: TokenPurpose): Promise<string> {
+export async function issueToken(
+  tx: Tx,
+  accountId: string,
+  purpose: TokenPurpose,
+  id: string = newId(),
+): Promise<string> {
   const at = now();
   await endTokens(tx, accountId, purpose);
   const { seed, hash } = newLinkToken(purpose);
-  const id = newId(at.getTime());
   await tx.db.insert(accountTokens).values({
     id,
     accountId,
@@ -32,6 +36,11 @@ export async function issueToken(tx: Tx, accountId: string, purpose: TokenPurpos
     expiresAt: new Date(at.getTime() + TOKEN_LASTS[purpose]),
   });
   return id;
+}
+
+/** Whether a link was ever made under an id. */
+export async function tokenExists(tx: Pick<Tx, "db">, tokenId: string): Promise<boolean> {
+  return (await tx.db.$count(accountTokens, eq(accountTokens.id, tokenId))) > 0;
 }
 
 /** Ends an account's unused links for a purpose. */
