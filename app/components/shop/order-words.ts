@@ -95,5 +95,5 @@ export function addressLines(address: Address, languageTag: string): string[] {
     town.filter(Boolean).join(" "),
     region,
     countryName(address.country, languageTag),
-  ].filter((line) => line !== undefined && line !== "");
+  ].flatMap((line) => (line === undefined || line === "" ? [] : [line]));
 }

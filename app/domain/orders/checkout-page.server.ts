@@ -1,6 +1,6 @@
 import { db } from "db/client.server";
-import { parties, printPictures, prints, proofs } from "db/schema/schema";
-import { and, eq, inArray, isNotNull } from "drizzle-orm";
+import { orders, parties, printPictures, prints, proofs } from "db/schema/schema";
+import { and, desc, eq, inArray, isNotNull } from "drizzle-orm";
 import { numberMark } from "~/domain/editions/numbering";
 import { isCountryCode } from "~/domain/people/countries";
 import { theStudio } from "~/domain/studio/studio.server";
@@ -61,10 +61,10 @@ export async function counterView(query: {
   /** As asked for in the address; the buyer's own or the studio's when it is none. */
   country: string | null;
   method: Way;
-  visitor: { partyId: string; name: string; email: string } | null;
+  visitor: { accountId: string; partyId: string; name: string; email: string } | null;
 }): Promise<CounterView> {
   const studio = await theStudio();
-  const party = query.visitor === null ? undefined : await partyOf(query.visitor.partyId);
+  const party = query.visitor === null ? undefined : await partyOf(query.visitor);
   const asked = query.country?.toUpperCase() ?? "";
   const country = isCountryCode(asked) ? asked : (party?.address?.country ?? studio.country);
   const quote = await quoteBasket({ formatIds: query.basket, country, method: query.method });
@@ -128,8 +128,23 @@ export async function counterView(query: {
 
 type Party = typeof parties.$inferSelect;
 
-async function partyOf(partyId: string): Promise<Party | undefined> {
-  return (await db.select().from(parties).where(eq(parties.id, partyId)))[0];
+/** The buyer's party, with the address of its last order where it has none of its own. */
+async function partyOf(visitor: { accountId: string; partyId: string }): Promise<Party | undefined> {
+  const [party] = await db.select().from(parties).where(eq(parties.id, visitor.partyId));
+  if (party === undefined || party.address !== null) return party;
+  const [last] = await db
+    .select({ address: orders.deliveryAddress })
+    .from(orders)
+    .where(
+      and(
+        eq(orders.accountId, visitor.accountId),
+        eq(orders.state, "paid"),
+        isNotNull(orders.deliveryAddress),
+      ),
+    )
+    .orderBy(desc(orders.createdAt))
+    .limit(1);
+  return { ...party, address: last?.address ?? null };
 }
 
 function knownFields(
