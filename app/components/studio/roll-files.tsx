@@ -15,11 +15,13 @@ export function RollFiles({ rollId, frames, sent }: RollFilesProps) {
       caption="Files of the roll"
       rows={frames}
       rowKey={(frame) => frame.id}
+      variant="dense"
       columns={[
         {
           key: "frame",
           head: "Frame",
           names: true,
+          place: "first",
           cell: (frame) => (
             <Link to={href("/studio/rolls/:rollId/frames/:frameId", { rollId, frameId: frame.id })}>
               {frame.label}
@@ -29,12 +31,14 @@ export function RollFiles({ rollId, frames, sent }: RollFilesProps) {
         {
           key: "file",
           head: "File",
+          place: "main",
           cell: (frame) => <span className="file-name">{frame.scan?.fileName}</span>,
         },
         {
           key: "size",
           head: "Size",
           numeric: true,
+          place: "sum",
           cell: (frame) => (frame.scan === null ? "" : byteWords(frame.scan.bytes)),
         },
         {

@@ -1,4 +1,4 @@
-import { inTransaction, sqlState, violatedConstraint } from "db/client.server";
+import { db, inTransaction, sqlState, violatedConstraint } from "db/client.server";
 import { rolls } from "db/schema/schema";
 import { eq } from "drizzle-orm";
 import { type Actor, mustBeAllowed } from "~/domain/people/allowed";
@@ -24,8 +24,11 @@ export async function makeRoll(actor: Actor, roll: NewRoll): Promise<RollMade> {
     });
   } catch (error) {
     if (sqlState(error) !== "23505") throw error;
-    // The other of two simultaneous requests has made this very roll.
-    return isNumberTaken(error) ? { code: "number_taken" } : { code: "made", rollId: roll.id };
+    // The other of two simultaneous requests may have made this very roll.
+    const [made] = await db.select({ id: rolls.id }).from(rolls).where(eq(rolls.id, roll.id));
+    if (made !== undefined) return { code: "made", rollId: roll.id };
+    if (isNumberTaken(error)) return { code: "number_taken" };
+    throw error;
   }
 }
 

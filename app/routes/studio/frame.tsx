@@ -53,7 +53,10 @@ export default function Frame({ loaderData: { page, mayChange }, actionData }: R
   return (
     <>
       <title>{`Roll ${roll.number}, frame ${frame.label}`}</title>
-      <BenchHead title={`Frame ${frame.label}`} says={`Roll ${roll.number}. ${frame.note}`.trim()} />
+      <BenchHead
+        title={`Frame ${frame.label}`}
+        says={`Roll ${roll.number}${frame.note === "" ? "" : `: ${frame.note}`}`}
+      />
       <FormErrorSummary errors={form.summary} title="The frame was not changed" />
       <div className="day">
         <div>

@@ -56,7 +56,7 @@ export default function Roll({ loaderData, actionData }: Route.ComponentProps) {
           <RollUploadsPanel
             uploads={uploads}
             label={frames.length === 0 ? "Scans of the roll" : "More scans"}
-            hint="TIFF with 8 or 16 bits, JPEG or PNG; as many at once as you like. They take their order from their names."
+            hint="Choose them or drop them here, as many at once as you like: TIFF with 8 or 16 bits, JPEG or PNG. They take their order from their names."
           />
         </>
       ) : null}
