@@ -42,7 +42,8 @@ async function look(secret: string): Promise<FoundSession | null> {
 
 /**
  * Finds out who asks and in which language, for every request. Without a cookie the database is not asked. What is
- * answered to somebody signed in is never kept by a cache; a session in use has its cookie renewed with it.
+ * answered to somebody signed in is never kept by a cache, unless its route lets that very browser keep it (the
+ * studio's proofs); a session in use has its cookie renewed with it.
  */
 export const sessionMiddleware: MiddlewareFunction<Response> = async (
   { request, context, params, url },
@@ -59,7 +60,9 @@ export const sessionMiddleware: MiddlewareFunction<Response> = async (
   }
   const response = await next();
   if (secret === null) return response;
-  if (found !== null) response.headers.set("Cache-Control", "private, no-store");
+  const own = response.headers.get("Cache-Control") ?? "";
+  if (found !== null && !own.startsWith("private"))
+    response.headers.set("Cache-Control", "private, no-store");
   // A handler that signs in or out has set the cookie itself.
   const name = `${sessionCookie.name}=`;
   if (response.headers.getSetCookie().some((line) => line.startsWith(name))) return response;

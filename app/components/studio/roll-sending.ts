@@ -189,9 +189,14 @@ export class Sending {
         preview: previewOf(file),
       });
     }
-    if (!this.busy) this.#begun = performance.now();
+    // What arrived before is no part of this transfer.
+    const goesOn = this.busy;
+    if (!goesOn) this.#begun = performance.now();
     const replaced = new Set(added.map((file) => file.scanId));
-    this.#change({ files: [...this.#state.files.filter((file) => !replaced.has(file.scanId)), ...added] });
+    const before = this.#state.files.filter(
+      (file) => !replaced.has(file.scanId) && (goesOn || file.state === "failed"),
+    );
+    this.#change({ files: [...before, ...added] });
   }
 
   #isUnderWay(scanId: string): boolean {
@@ -259,7 +264,7 @@ class Refusal extends Error {}
 
 function wordsOf(error: unknown): string {
   if (error instanceof Refusal) return error.message;
-  return "The line broke, or storage did not answer. What had been sent of it is kept.";
+  return "The line broke, or storage did not answer.";
 }
 
 function previewOf(file: File): string | null {
