@@ -11,11 +11,12 @@ export default defineConfig({
   // The tests share one shop, its demo data and two cores with it.
   workers: 1,
   timeout: 90_000,
-  expect: { timeout: 10_000 },
+  expect: { timeout: 20_000 },
   reporter: report ? [["list"], ["json", { outputFile: report }]] : [["list"]],
   outputDir: process.env.E2E_OUTPUT || "test-results",
   use: {
     baseURL: shopUrl,
+    actionTimeout: 20_000,
     browserName: "chromium",
     locale: "en-GB",
     timezoneId: "Europe/London",

@@ -53,7 +53,7 @@ test("the photographer signs in and makes a roll", async ({ visit }) => {
   await page.getByLabel("E-mail address").fill(email);
   await page.getByLabel("Password").fill("not the password");
   await page.getByRole("button", { name: "Sign in" }).click();
-  await expect(page.locator("[aria-invalid=true]").first()).toBeVisible();
+  await expect(page.getByRole("alert")).toContainText("The e-mail address or the password is not right.");
   await look(page);
   await page.getByLabel("E-mail address").fill(email);
   await page.getByLabel("Password").fill(password);
@@ -113,16 +113,19 @@ test("a frame is marked, made into a print, described and published", async ({ v
     .first()
     .click();
   await expect(page).toHaveURL(/\/frames\//);
+  const frame = new URL(page.url()).pathname;
   await look(page);
   await page.getByLabel("Aperture").fill("f/22");
   await page.getByLabel("Time", { exact: true }).fill("6");
-  await page.getByRole("button", { name: "Keep", exact: false }).first().click();
-  await expect(page.getByLabel("Aperture")).toHaveValue(/22/);
+  await page.getByRole("button", { name: "Keep these notes" }).click();
+  await expect(page.getByLabel("Aperture")).toHaveValue("f/22");
+  await page.getByRole("button", { name: "Mark as chosen" }).click();
+  await expect(page.getByRole("button", { name: "Take the pencil mark away" })).toBeVisible();
 
-  const roll = new URL(page.url()).pathname.split("/")[3] ?? "";
-  await goto(page, `/studio/prints/new?roll=${roll}`);
-  await page.getByRole("checkbox", { name: /frame 1/ }).check();
-  await page.getByRole("button", { name: "Make a print of these" }).click();
+  await goto(page, "/studio/prints/new");
+  await expect(page.getByRole("checkbox").first()).toBeVisible();
+  await page.goto(frame);
+  await page.getByRole("link", { name: "Make a print from this frame" }).click();
   await expect(page.getByLabel("Title")).toBeVisible();
   await look(page);
   await page.getByLabel("Title").fill(TITLE);
@@ -167,8 +170,8 @@ test("an edition of three is planned with its figures, and opened", async ({ vis
   await page.getByLabel("From, step 2").fill("3");
   await page.getByLabel("To, step 2").fill("3");
   await page.getByLabel("Price, step 2").fill("340");
-  // 5,250 px on 296 mm: 5250 / (296 / 25.4) = 450.
-  await expect(page.getByText(/450 ppi/)).toBeVisible();
+  // 4,200 px on 237 mm are fewer to the inch than 5,250 px on 296 mm: 4200 / (237 / 25.4) = 450.1.
+  await expect(page.getByText("450.1 ppi")).toBeVisible();
   await expect(page.getByText("£900.00")).toBeVisible();
   await expect(page.getByText("4 of 30")).toBeVisible();
   await expect(page.getByText(/26 copies more stay within the 30/)).toBeVisible();

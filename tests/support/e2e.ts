@@ -10,12 +10,6 @@ const STANDARD = ["wcag2a", "wcag2aa", "wcag21a", "wcag21aa", "wcag22aa"];
 export const DESK = { width: 1440, height: 900 };
 export const PHONE = { width: 390, height: 844 };
 
-export type Visitor = {
-  page: Page;
-  /** Errors of this page that a test expects, by their text. */
-  expectTrouble: (text: RegExp) => void;
-};
-
 type VisitorOptions = {
   /** Whose account; nobody's unless given. */
   as?: DemoRole;
@@ -34,10 +28,12 @@ type Fixtures = {
 /** Chromium reports every answer of 400 as an error of its console; a form that was not taken is answered so. */
 const FORM_NOT_TAKEN = /^Failed to load resource: the server responded with a status of 400 /;
 
-export const test = base.extend<Fixtures & { troubles: { seen: string[]; allowed: RegExp[] } }>({
+export type Troubles = { seen: string[]; allowed: RegExp[] };
+
+export const test = base.extend<Fixtures & { troubles: Troubles }>({
   // biome-ignore lint/correctness/noEmptyPattern: Playwright reads a fixture's needs from its first parameter's names
   troubles: async ({}, use) => {
-    const troubles = { seen: [] as string[], allowed: [FORM_NOT_TAKEN] };
+    const troubles: Troubles = { seen: [], allowed: [FORM_NOT_TAKEN] };
     await use(troubles);
     const unexpected = troubles.seen.filter(
       (text) => !troubles.allowed.some((allowed) => allowed.test(text)),
@@ -54,7 +50,8 @@ export const test = base.extend<Fixtures & { troubles: { seen: string[]; allowed
       opened.push(page);
       page.on("pageerror", (error) => troubles.seen.push(`${error}`));
       page.on("console", (message) => {
-        if (message.type() === "error" || message.type() === "warning") troubles.seen.push(message.text());
+        if (!["error", "warning"].includes(message.type())) return;
+        troubles.seen.push(`${message.text()} (${message.location().url})`);
       });
       return page;
     });
