@@ -21,7 +21,7 @@ export function RootError({ error }: { error: unknown }) {
   const words = useMessages().errors;
   const lang = segmentOf(useLanguage());
   const { pathname, search } = useLocation();
-  const [title, text] = {
+  const pages: Record<AppErrorCode | "bug", [title: string, text: string]> = {
     not_found: [words.notFoundTitle, words.notFoundText],
     not_allowed: [words.notAllowedTitle, words.notAllowedText],
     sign_in_needed: [words.signInTitle, words.signInText],
@@ -30,7 +30,8 @@ export function RootError({ error }: { error: unknown }) {
     unavailable: [words.unavailableTitle, words.unavailableText],
     gone: [words.goneTitle, words.goneText],
     bug: [words.bugTitle, words.bugText],
-  }[codeOf(error)];
+  };
+  const [title, text] = pages[codeOf(error)];
   const signIn = codeOf(error) === "sign_in_needed";
   const held = signIn && isRouteErrorResponse(error) ? heldFormIn(error.data) : null;
   if (held !== null) {
