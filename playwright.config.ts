@@ -37,7 +37,11 @@ export default defineConfig({
   },
   projects: [
     { name: "requests", testMatch: "api/**/*.spec.ts" },
-    { name: "desk", testIgnore: "api/**", use: { viewport: { width: 1440, height: 900 } } },
+    {
+      name: "desk",
+      testIgnore: ["api/**", "no-script.spec.ts"],
+      use: { viewport: { width: 1440, height: 900 } },
+    },
     {
       name: "phone",
       testMatch: "pages.spec.ts",

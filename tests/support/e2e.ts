@@ -104,6 +104,16 @@ export async function look(page: Page): Promise<void> {
   if (before !== null) await page.setViewportSize(before);
 }
 
+/** Nothing on the page as it stands is wider than the window, at either width; without axe. */
+export async function fits(page: Page): Promise<void> {
+  const before = page.viewportSize();
+  for (const [width, size] of Object.entries({ "1440 px": DESK, "390 px": PHONE })) {
+    await page.setViewportSize(size);
+    expect(await overflow(page), `sideways scrolling on ${page.url()} at ${width}`).toBe(0);
+  }
+  if (before !== null) await page.setViewportSize(before);
+}
+
 /** Opens an address and looks at it. */
 export async function goto(page: Page, address: string): Promise<void> {
   const answer = await page.goto(address);
