@@ -18,8 +18,6 @@ export const account = {
     disabled: "Dieses Konto wurde geschlossen. Bitte schreiben Sie dem Atelier.",
     tooMany: "Das wurde zu oft versucht. Bitte warten Sie {minutes} und versuchen Sie es dann noch einmal.",
     minutes: { one: "eine Minute", other: "{n} Minuten" },
-    already: "Sie sind als {name} angemeldet.",
-    toAccount: "Zu Ihrem Konto",
   },
   held: {
     title: "Sie wurden inzwischen abgemeldet",

@@ -18,8 +18,6 @@ export const account = {
     disabled: "This account has been closed. Please write to the studio.",
     tooMany: "That was tried too often. Please wait {minutes} and try again.",
     minutes: { one: "one minute", other: "{n} minutes" },
-    already: "You are signed in as {name}.",
-    toAccount: "To your account",
   },
   held: {
     title: "You were signed out meanwhile",
