@@ -211,7 +211,7 @@ function ReleaseForm({ edition, problem }: OwnProps) {
   return (
     <Form method="post" preventScrollReset className="bench-form">
       <input type="hidden" name="intent" value="release" />
-      <ReleaseFields form={form} zone={edition.zone} nowWords="Now" />
+      <ReleaseFields form={form} zoneLabel={edition.zoneLabel} nowWords="Now" />
       <div className="acts">
         <Press>Move the release</Press>
       </div>

@@ -1,3 +1,4 @@
+import type { ReactNode } from "react";
 import { href, Link } from "react-router";
 import { Block } from "~/components/studio/bench";
 import { editionFacts } from "~/components/studio/edition-draft";
@@ -21,10 +22,10 @@ import { Pager } from "~/components/ui/pager";
 import { CAP_OF_COPIES } from "~/domain/editions/cap";
 import type { EditionPage, LedgerPage } from "~/domain/editions/edition-page.server";
 
-export type EditionTopProps = { edition: EditionPage };
+export type EditionTopProps = { edition: EditionPage; children: ReactNode };
 
-/** The number sheet, and beside it the print and how the edition stands. */
-export function EditionTop({ edition }: EditionTopProps) {
+/** The number sheet, below it what can be done (`children`), beside it the print and how the edition stands. */
+export function EditionTop({ edition, children }: EditionTopProps) {
   const next = nextNumber(edition);
   const numbered = edition.copies.filter((copy) => copy.run === "numbered");
   const { print } = edition;
@@ -39,6 +40,7 @@ export function EditionTop({ edition }: EditionTopProps) {
           <summary>What the leaves say</summary>
           <LeafLegend placements={LEGEND} />
         </details>
+        {children}
       </section>
       <section aria-labelledby="standing">
         <h2 id="standing" className="vh">
@@ -100,7 +102,7 @@ export function EditionLedger({ edition, ledger }: EditionLedgerProps) {
     <Block title="Ledger" id="ledger" aside={total === 1 ? "1 line" : `${total} lines`}>
       <p className="quiet">
         Lines are added at the top and never changed. To put one right, write another that names it. Times are{" "}
-        {edition.zone}.
+        {edition.zoneLabel}.
       </p>
       <Book
         caption={`Ledger of ${edition.print.title}, edition of ${edition.limit}`}

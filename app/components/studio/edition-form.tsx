@@ -1,5 +1,5 @@
-import { type ReactNode, useEffect, useRef, useState } from "react";
-import { Form, href, useFetcher } from "react-router";
+import { useRef } from "react";
+import { Form } from "react-router";
 import { Check } from "~/components/form/check";
 import { Choices } from "~/components/form/choices";
 import { Field } from "~/components/form/field";
@@ -8,6 +8,7 @@ import { type FormState, formState } from "~/components/form/form-state";
 import { Block } from "~/components/studio/bench";
 import { CapStanding } from "~/components/studio/edition-figures-list";
 import { EditionFormat } from "~/components/studio/edition-format";
+import { useLiveFigures } from "~/components/studio/edition-live-figures";
 import { ReleaseFields } from "~/components/studio/edition-release";
 import { Press } from "~/components/ui/press";
 import type { EditionFigures } from "~/domain/editions/edition-figures";
@@ -24,23 +25,10 @@ export type EditionFormProps = {
   figures: EditionFigures;
   papers: readonly PaperChoice[];
   currency: string;
-  zone: string;
+  zoneLabel: string;
   /** Takes the focus when the form comes back from adding a row. */
   focus: string | null;
-  children?: ReactNode;
 };
-
-/** After the last key, ms: long enough not to ask at every figure typed. */
-const SETTLED = 250;
-
-/** What the form says now, as the address that the figures are asked for at. */
-function queryOf(form: HTMLFormElement): string {
-  const search = new URLSearchParams();
-  for (const [name, value] of new FormData(form)) {
-    if (typeof value === "string" && name !== "furtherEditions") search.append(name, value);
-  }
-  return search.toString();
-}
 
 /** The plan of an edition, with its figures beside it: worked out again while it is filled in, or at a press. */
 export function EditionForm({
@@ -50,26 +38,13 @@ export function EditionForm({
   figures: first,
   papers,
   currency,
-  zone,
+  zoneLabel,
   focus,
-  children,
 }: EditionFormProps) {
   const form = formState(problem, answers as Record<string, string>);
   const { formats } = rowsOf(problem?.answers ?? answers);
-  const fetcher = useFetcher<{ figures: EditionFigures | null }>();
-  const timer = useRef<ReturnType<typeof setTimeout>>(undefined);
   const element = useRef<HTMLFormElement>(null);
-  const [asked, setAsked] = useState(false);
-  useEffect(() => () => clearTimeout(timer.current), []);
-  function changed() {
-    clearTimeout(timer.current);
-    timer.current = setTimeout(() => {
-      if (element.current === null) return;
-      setAsked(true);
-      fetcher.load(`${href("/studio/editions/figures")}?${queryOf(element.current)}`);
-    }, SETTLED);
-  }
-  const figures = (asked ? fetcher.data?.figures : null) ?? first;
+  const { figures, changed } = useLiveFigures(element, first);
 
   return (
     <Form method="post" preventScrollReset ref={element} onChange={changed} className="edition-form">
@@ -106,7 +81,7 @@ export function EditionForm({
             </Press>
           </div>
           <Block title="The release">
-            <ReleaseFields form={form} zone={zone} nowWords="As soon as the edition is opened" />
+            <ReleaseFields form={form} zoneLabel={zoneLabel} nowWords="As soon as the edition is opened" />
           </Block>
           <Block title="What is promised">
             <PolicyFields form={form} />
@@ -123,13 +98,12 @@ export function EditionForm({
               </Press>
             </div>
           </Block>
-          <div className="acts form-acts">
+          <div className="form-acts">
             <Press name="intent" value="save">
               Keep as a draft
             </Press>
-            {children}
+            <p className="hint">Nothing is fixed until the edition is opened, in a step of its own.</p>
           </div>
-          <p className="hint">Nothing is fixed until the edition is opened, in a step of its own.</p>
         </div>
       </div>
     </Form>

@@ -52,7 +52,7 @@ export function EditionFormat({
       aside={
         many ? (
           <button type="submit" name="intent" value={`remove-format:${index}`} className="plain">
-            Take format {index + 1} away
+            Remove format {index + 1}
           </button>
         ) : null
       }
@@ -89,7 +89,7 @@ export function EditionFormat({
           <Field label="Sheet width" {...millimetres} {...field("sheetWidth", row.sheetWidth)} />
           <Field
             label="Sheet height"
-            hint="Read only where no sheet is chosen above."
+            hint="Only where no sheet is chosen above."
             {...millimetres}
             {...field("sheetHeight", row.sheetHeight)}
           />

@@ -3,10 +3,10 @@ import { Field } from "~/components/form/field";
 import type { FormState } from "~/components/form/form-state";
 import { TWICE } from "~/domain/editions/edition-rows";
 
-export type ReleaseFieldsProps = { form: FormState; zone: string; nowWords: string };
+export type ReleaseFieldsProps = { form: FormState; zoneLabel: string; nowWords: string };
 
 /** Now, or at a day and time in the studio's zone. A time that comes twice is asked about. */
-export function ReleaseFields({ form, zone, nowWords }: ReleaseFieldsProps) {
+export function ReleaseFields({ form, zoneLabel, nowWords }: ReleaseFieldsProps) {
   const twice = form.error("releaseTime")?.includes(TWICE) || (form.value("releaseWhich") ?? "") !== "";
   return (
     <div className="fields">
@@ -25,7 +25,7 @@ export function ReleaseFields({ form, zone, nowWords }: ReleaseFieldsProps) {
         <Field label="Day" type="date" width="middle" {...form.field("releaseDay")} />
         <Field
           label="Time"
-          hint={`In the studio's zone, ${zone}.`}
+          hint={`${zoneLabel}.`}
           type="time"
           width="middle"
           {...form.field("releaseTime")}

@@ -19,7 +19,7 @@ export type StepRowsProps = {
 export function StepRows({ at, act, prefix = "", steps, error, currency, focus }: StepRowsProps) {
   const before = at === "" ? "" : `${at}.`;
   return (
-    <fieldset className="fieldset steps">
+    <fieldset className="fieldset rungs">
       <legend>Price of each number</legend>
       <p className="hint">In {currency}, home tax included. The price belongs to the number.</p>
       <ol>
@@ -43,8 +43,8 @@ export function StepRows({ at, act, prefix = "", steps, error, currency, focus }
               {box("to", s === 0 ? "To" : `To, step ${s + 1}`)}
               {box("price", s === 0 ? "Price" : `Price, step ${s + 1}`)}
               <button type="submit" name="intent" value={`remove-step${act}:${s}`} className="plain">
-                <span aria-hidden="true">Away</span>
-                <span className="vh">Take step {s + 1} away</span>
+                <span aria-hidden="true">Remove</span>
+                <span className="vh">Remove step {s + 1}</span>
               </button>
             </li>
           );

@@ -28,6 +28,11 @@ import { RUNS, type Run } from "./numbering";
 import type { CopyPlacement, LedgerEntryKind } from "./transitions";
 import { LEDGER_ENTRY_KINDS } from "./transitions";
 
+/** The studio's zone as it calls it, with the name that programs know. */
+export function zoneLabel(studio: { zone: string; zoneName: string }): string {
+  return studio.zoneName === "" ? studio.zone : `${studio.zoneName}, ${studio.zone}`;
+}
+
 export const LINES_A_PAGE = 50;
 
 export type EditionCopy = {
@@ -81,6 +86,8 @@ export type EditionPage = {
   lowestLimit: number | null;
   currency: string;
   zone: string;
+  /** "Ember time, Europe/London" */
+  zoneLabel: string;
   signature: string;
 };
 
@@ -172,6 +179,7 @@ export async function editionPage(editionId: string): Promise<EditionPage | null
     lowestLimit: open ? await lowestLimit({ db }, editionId) : null,
     currency: studio.currency,
     zone: studio.zone,
+    zoneLabel: zoneLabel(studio),
     signature: studio.signature,
   };
 }

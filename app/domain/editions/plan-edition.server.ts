@@ -7,6 +7,7 @@ import type { Answers } from "~/platform/form-fields";
 import { type CurrencyCode, currencyCode } from "~/platform/money";
 import { type EditionFigures, editionFigures, type PlannedPicture } from "./edition-figures";
 import { planOf } from "./edition-form";
+import { zoneLabel } from "./edition-page.server";
 
 /** What planning an edition of a print needs to know. Pixels are those inside the crop. */
 export type PlannedPrint = {
@@ -93,6 +94,7 @@ export type Planning = {
   figures: EditionFigures;
   currency: CurrencyCode;
   zone: string;
+  zoneLabel: string;
 };
 
 /** The figures of answers as far as they go, and what the form offers; null when there is no such print. */
@@ -113,5 +115,6 @@ export async function planning(
     figures: editionFigures(planOf(answers, { currency, grammages }), print.pictures),
     currency,
     zone: studio.zone,
+    zoneLabel: zoneLabel(studio),
   };
 }

@@ -11,8 +11,8 @@ export async function loader({ request }: Route.LoaderArgs) {
   const { searchParams, search } = new URL(request.url);
   const printId = searchParams.get("printId");
   const editionId = searchParams.get("id");
-  if (!isUuid(printId) || search.length > LONGEST) return { figures: null };
+  if (!isUuid(printId) || search.length > LONGEST) return Response.json({ figures: null });
   const answers: Answers = Object.fromEntries(searchParams);
   const plan = await planning(printId, answers, isUuid(editionId) ? editionId : null);
-  return { figures: plan?.figures ?? null };
+  return Response.json({ figures: plan?.figures ?? null }, { headers: { "Cache-Control": "no-store" } });
 }

@@ -99,7 +99,7 @@ export default function PlanEdition({ loaderData, actionData }: Route.ComponentP
         figures={plan.figures}
         papers={plan.papers}
         currency={plan.currency}
-        zone={plan.zone}
+        zoneLabel={plan.zoneLabel}
         focus={actionData?.focus ?? null}
       />
     </>

@@ -103,16 +103,17 @@ export default function Edition({ loaderData, actionData }: Route.ComponentProps
               <p>Nobody can buy this edition there until its print is published.</p>
             </Notice>
           )}
-          <EditionTop edition={edition} />
-          <EditionActs
-            key={actionData?.attempt ?? "first"}
-            edition={edition}
-            problem={problem}
-            focus={actionData?.focus ?? null}
-            shown={shown}
-            ladders={ladders}
-            may={may}
-          />
+          <EditionTop edition={edition}>
+            <EditionActs
+              key={actionData?.attempt ?? "first"}
+              edition={edition}
+              problem={problem}
+              focus={actionData?.focus ?? null}
+              shown={shown}
+              ladders={ladders}
+              may={may}
+            />
+          </EditionTop>
           <EditionLedger edition={edition} ledger={ledger} />
         </>
       )}
