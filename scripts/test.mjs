@@ -113,8 +113,9 @@ async function main() {
       step("build", async () => {
         await ensureBuild(PROJECT, { say, run: children.run });
       }),
-    e2e: () => endToEnd("e2e", ["--grep-invert", "@long"]),
-    "e2e-long": () => endToEnd("e2e-long", ["--grep", "@long"]),
+    // The browser's stories take minutes and measure times: they belong to `npm run test:long`.
+    e2e: () => endToEnd("e2e", ["--project=requests"]),
+    "e2e-long": () => endToEnd("e2e-long", ["--project=desk", "--project=phone"]),
   };
   for (const name of steps) await work[name]?.();
 }
@@ -308,14 +309,16 @@ async function endToEnd(name, selection) {
     await shop.ready;
   });
   if (started) {
-    await step("a later start in 10 s", async () => {
-      await stopInTime(shop);
-      const since = Date.now();
-      shop = start();
-      await shop.ready;
-      const took = Date.now() - since;
-      if (took > READY_WITHIN) throw new Error(`ready after ${took} ms`);
-    });
+    if (name === "e2e-long") {
+      await step("a later start in 10 s", async () => {
+        await stopInTime(shop);
+        const since = Date.now();
+        shop = start();
+        await shop.ready;
+        const took = Date.now() - since;
+        if (took > READY_WITHIN) throw new Error(`ready after ${took} ms`);
+      });
+    }
     say(`\n== ${name}`);
     const since = Date.now();
     const report = path.join(dataDirectory, "reports", `${name}.json`);
