@@ -13,8 +13,7 @@ function policy(nonce: string): string {
     "style-src 'self'",
     `img-src 'self' data: blob: ${storage}`,
     "font-src 'self'",
-    // Pictures chosen for upload are looked at through blob: addresses of this page.
-    `connect-src 'self' blob: ${uploads}`,
+    `connect-src 'self' ${uploads}`,
     // Chromium applies form-action to where a form is redirected: the payment page must be named.
     `form-action 'self' ${origin(env.STRIPE_PUBLIC_URL)}`,
     "frame-ancestors 'none'",
