@@ -22,8 +22,8 @@ export default defineConfig({
           include: ["tests/integration/**/*.test.{ts,tsx}"],
           globalSetup: ["tests/support/integration-setup.ts"],
           setupFiles: ["tests/support/integration-env.ts"],
-          testTimeout: 20_000,
-          hookTimeout: 30_000,
+          testTimeout: 60_000,
+          hookTimeout: 60_000,
         },
       },
       {
