@@ -13,6 +13,7 @@ import { type Act, actOf } from "~/domain/editions/edition-act-names";
 import type { EditionPage } from "~/domain/editions/edition-page.server";
 import { EMPTY_STEP, type StepRow, stepsOf } from "~/domain/editions/edition-rows";
 import { canBePlaced, HAND_ACT_WORDS, HAND_ACTS } from "~/domain/editions/hand-acts";
+import { spans } from "~/domain/editions/ledger-words";
 import { wallClock } from "~/domain/editions/release-time";
 import { PLACEMENT_WORDS } from "~/domain/editions/transitions";
 import type { FormProblem } from "~/platform/form-fields";
@@ -255,7 +256,7 @@ function CloseForm({ edition, problem }: OwnProps) {
           ? "No number is left to retire."
           : `${retired.length === 1 ? "One number" : `${retired.length} numbers`} never issued will be retired for good${
               aside > 0 ? `, ${aside} of them set aside now` : ""
-            }: ${retired.map((copy) => copy.mark).join(", ")}.`}{" "}
+            }: ${spans(retired.map((copy) => copy.number))}.`}{" "}
         The denominator stays {edition.limit}, as it was signed. A closed edition is not opened again.
       </p>
       <TextArea label="Why" rows={2} {...form.field("reason")} id="close-reason" />

@@ -72,7 +72,7 @@ export function EditionTop({ edition, children }: EditionTopProps) {
               detail: formatWords(format),
             })),
             ...edition.formats.map((format, f) => ({
-              term: edition.formats.length > 1 ? `Sold out, format ${f + 1}` : "Sold out",
+              term: edition.formats.length > 1 ? `If sold out, format ${f + 1}` : "If sold out",
               detail: sumExact(format.sellOut, edition.currency),
             })),
           ]}

@@ -11,7 +11,7 @@ import { Press, PressLink } from "~/components/ui/press";
 import { formatInstant } from "~/domain/dates";
 import type { EditionFigures } from "~/domain/editions/edition-figures";
 import type { EditionPage } from "~/domain/editions/edition-page.server";
-import { RUN_NAMES, type Run } from "~/domain/editions/numbering";
+import { countOfRun, type Run } from "~/domain/editions/numbering";
 import { ladderRows } from "~/domain/pricing/ladder";
 
 export type EditionDraftProps = {
@@ -25,7 +25,7 @@ export type EditionDraftProps = {
 
 function outsideWords(edition: EditionPage): string {
   const runs = Object.entries(edition.outside) as [Exclude<Run, "numbered">, number][];
-  const said = runs.filter(([, n]) => n > 0).map(([run, n]) => `${n} ${RUN_NAMES[run].toLowerCase()}`);
+  const said = runs.filter(([, n]) => n > 0).map(([run, n]) => countOfRun(run, n));
   return said.length === 0 ? "none" : said.join(", ");
 }
 

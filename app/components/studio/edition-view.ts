@@ -8,7 +8,7 @@ import type {
   LedgerLine,
 } from "~/domain/editions/edition-page.server";
 import { entryWords, happenedWords, writtenWords } from "~/domain/editions/ledger-words";
-import { RUN_NAMES, RUNS } from "~/domain/editions/numbering";
+import { countOfRun, RUNS } from "~/domain/editions/numbering";
 import { PLACEMENT_WORDS } from "~/domain/editions/transitions";
 import { priceOf } from "~/domain/pricing/ladder";
 import { currencyCode, formatMoney } from "~/platform/money";
@@ -100,7 +100,7 @@ export function outsideRows(edition: EditionPage): NumberSheetOutside[] {
     {
       label: "Outside the run",
       words: kinds
-        .map((run) => `${outside.filter((copy) => copy.run === run).length} ${RUN_NAMES[run].toLowerCase()}`)
+        .map((run) => countOfRun(run, outside.filter((copy) => copy.run === run).length))
         .join(", "),
       copies: outside.map((copy) => leaf(copy, null)),
     },

@@ -137,9 +137,9 @@ export function PrintCrop({ form, prefix, picture, scan, fixed }: PrintCropProps
         </div>
         <p className="hint">
           {crop === null
-            ? "These four numbers are no crop of the scan."
+            ? "These four numbers are no crop of the scan"
             : `${Math.round((crop.width * scan.width) / 1_000_000).toLocaleString("en-GB")} × ${Math.round((crop.height * scan.height) / 1_000_000).toLocaleString("en-GB")} px of ${scan.width.toLocaleString("en-GB")} × ${scan.height.toLocaleString("en-GB")}`}
-          {fixed ? null : ". The scan itself is never touched."}
+          .{fixed ? null : " The scan itself is never touched."}
         </p>
       </fieldset>
     </div>

@@ -29,7 +29,8 @@ export async function closeEarly(
       held: await heldCopies(tx.db, editionId),
     });
     if (refused !== null) return { kind: "refused", sentence: refused.sentence };
-    if (reason.trim() === "") return { kind: "refused", sentence: "Say why the edition is closed." };
+    if (reason.trim() === "")
+      return { kind: "refused", sentence: "Say why the edition is closed.", field: "reason" };
     const issued = await issuedCopies(tx.db, editionId);
     const left = await tx.db
       .select()

@@ -26,8 +26,12 @@ export async function correctEntry(
   correction: Correction,
 ): Promise<CommandOutcome> {
   if (!can(actor.roles, "copies.place")) throw new AppError("not_allowed", "copies.place");
-  const refuse = (sentence: string): CommandOutcome => ({ kind: "refused", sentence });
-  if (correction.words.trim() === "") return refuse("Say what is right.");
+  const refuse = (sentence: string, field?: string): CommandOutcome => ({
+    kind: "refused",
+    sentence,
+    ...(field === undefined ? {} : { field }),
+  });
+  if (correction.words.trim() === "") return refuse("Say what is right.", "words");
   try {
     return await inTransaction(async (tx): Promise<CommandOutcome> => {
       const edition = await lockEdition(tx, editionId);
@@ -35,7 +39,7 @@ export async function correctEntry(
         .select()
         .from(ledgerEntries)
         .where(and(eq(ledgerEntries.editionId, editionId), eq(ledgerEntries.line, correction.line)));
-      if (entry === undefined) return refuse(`There is no line ${correction.line} in this ledger.`);
+      if (entry === undefined) return refuse(`There is no line ${correction.line} in this ledger.`, "line");
       const written = {
         kind: "corrected" as const,
         corrects: entry.id,

@@ -30,7 +30,7 @@ const refuse = (sentences: string[], field?: string): ActOutcome => ({
 });
 
 function plain(outcome: CommandOutcome): ActOutcome {
-  return outcome.kind === "done" ? outcome : refuse([outcome.sentence]);
+  return outcome.kind === "done" ? outcome : refuse([outcome.sentence], outcome.field);
 }
 
 /** Gives the command that an act of the edition's page asks for. Throws AppError `not_allowed`, `not_found`. */

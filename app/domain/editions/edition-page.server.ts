@@ -22,7 +22,7 @@ import { theStudio } from "~/domain/studio/studio.server";
 import { now } from "~/platform/clock";
 import { issuedCopies } from "./issued.server";
 import { markOf, runTotal } from "./ledger.server";
-import { type LedgerBody, readBody } from "./ledger-words";
+import { type LedgerBody, readBody } from "./ledger-body";
 import { lowestLimit } from "./lower-limit.server";
 import { RUNS, type Run } from "./numbering";
 import type { CopyPlacement, LedgerEntryKind } from "./transitions";

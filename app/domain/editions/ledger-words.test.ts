@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { entryWords, happenedWords, readBody } from "./ledger-words";
+import { readBody } from "./ledger-body";
+import { entryWords, happenedWords, spans } from "./ledger-words";
 
 const ZONE = "Europe/London";
 const plain = { sheet: null, mark: null, body: {}, corrects: null, secret: null };
@@ -42,6 +43,17 @@ describe("a line of the ledger in words", () => {
     expect(entryWords(given, ZONE)).toEqual({ verb: "Given", rest: "" });
     const secret = { partyName: "Ember Infirmary", orderNumber: null, reason: "for the east corridor" };
     expect(entryWords({ ...given, secret }, ZONE).rest).toBe("to Ember Infirmary: for the east corridor");
+  });
+
+  it("puts numbers that follow each other together", () => {
+    expect(spans([1, 3, 4, 5, 9])).toBe("1, 3 to 5, 9");
+    expect(spans([])).toBe("");
+    const closed = { ...plain, kind: "closed_early" as const, body: { retired: [1, 2, 3] } };
+    expect(entryWords(closed, ZONE).rest).toBe(", numbers 1 to 3 retired");
+    expect(entryWords({ ...closed, mark: "2/3", body: {} }, ZONE)).toEqual({
+      verb: "Retired",
+      rest: ", as the edition was closed early",
+    });
   });
 
   it("names the line that a correction puts right", () => {

@@ -1,54 +1,12 @@
-import { z } from "zod";
 import { formatInstant, formatPartialDate, isoDayInZone, type ZoneName } from "~/domain/dates";
 import { ladderRows } from "~/domain/pricing/ladder";
 import { currencyCode, formatMoney } from "~/platform/money";
-import { numberMark, RUNS } from "./numbering";
+import type { LedgerBody } from "./ledger-body";
 import { ENTRY_WORDS, type LedgerEntryKind } from "./transitions";
 
 /** A line of the ledger in words, for the studio. */
 
 const TAG = "en-GB";
-
-const steps = z.array(z.object({ fromNumber: z.number(), toNumber: z.number(), amount: z.number() }));
-
-/** The public facts an entry may carry that its words need; whatever else it carries is left alone. */
-const bodySchema = z
-  .object({
-    limit: z.number(),
-    from: z.number(),
-    to: z.number(),
-    release: z.string(),
-    wasRelease: z.string(),
-    until: z.string(),
-    format: z.number(),
-    currency: z.string(),
-    was: steps,
-    now: steps,
-    retired: z.array(z.number()),
-  })
-  .partial();
-export type LedgerBody = z.output<typeof bodySchema>;
-
-const copySchema = z.object({
-  run: z.enum(RUNS),
-  number: z.number(),
-  of: z.number(),
-});
-
-/** Reads an entry's public body: the mark of its copy, its sheet's number, and its facts. */
-export function readBody(json: string): { mark: string | null; sheet: number | null; facts: LedgerBody } {
-  const body: unknown = JSON.parse(json);
-  const copy = copySchema.safeParse(body);
-  const sheet = z.object({ sheet: z.number() }).safeParse(body);
-  const facts = bodySchema.safeParse(body);
-  return {
-    mark: copy.success
-      ? numberMark({ run: copy.data.run, number: copy.data.number, total: copy.data.of })
-      : null,
-    sheet: sheet.success ? sheet.data.sheet : null,
-    facts: facts.success ? facts.data : {},
-  };
-}
 
 /** "1 to 5 at £280.00, 6 to 15 at £340.00" */
 export function ladderWords(
@@ -63,6 +21,17 @@ export function ladderWords(
         : `${row.fromNumber} to ${row.toNumber} at ${price}`;
     })
     .join(", ");
+}
+
+/** "1, 3 to 5" of ascending numbers. */
+export function spans(numbers: readonly number[]): string {
+  const found: [number, number][] = [];
+  for (const number of numbers) {
+    const last = found.at(-1);
+    if (last !== undefined && last[1] + 1 === number) last[1] = number;
+    else found.push([number, number]);
+  }
+  return found.map(([from, to]) => (from === to ? `${from}` : `${from} to ${to}`)).join(", ");
 }
 
 export type WordsFor = {
@@ -109,7 +78,7 @@ export function entryWords(entry: WordsFor, zone: ZoneName): { verb: string; res
         parts.push(
           body.retired.length === 0
             ? ", no number was left to retire"
-            : `, ${body.retired.length === 1 ? "number" : "numbers"} ${body.retired.join(", ")} retired`,
+            : `, ${body.retired.length === 1 ? "number" : "numbers"} ${spans(body.retired)} retired`,
         );
       }
       break;

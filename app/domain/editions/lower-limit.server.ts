@@ -11,7 +11,8 @@ import { lockEdition, writeEditionEntry } from "./ledger.server";
 import type { StudioActor } from "./studio-actor";
 import { refusedForEdition } from "./transitions";
 
-export type CommandOutcome = { kind: "done" } | { kind: "refused"; sentence: string };
+/** `field` names the answer that is at fault, where one is. */
+export type CommandOutcome = { kind: "done" } | { kind: "refused"; sentence: string; field?: string };
 
 /**
  * Lowers the limit of an open edition none of whose numbers has been issued: the copies past it go, the ladders are cut,
@@ -31,6 +32,7 @@ export async function lowerLimit(actor: StudioActor, editionId: string, to: numb
       return {
         kind: "refused",
         sentence: `The limit can only fall: give a number from 1 to ${edition.limit - 1}.`,
+        field: "limit",
       };
     }
     const least = await lowestLimit(tx, editionId);
@@ -38,6 +40,7 @@ export async function lowerLimit(actor: StudioActor, editionId: string, to: numb
       return {
         kind: "refused",
         sentence: `Number ${least} is no longer untouched: the book or an order names it, so the limit cannot fall below ${least}.`,
+        field: "limit",
       };
     }
     await tx.db

@@ -28,6 +28,20 @@ const PREFIXES: Record<Exclude<Run, "numbered" | "bat">, string> = {
   exhibition: "Exhibition",
 };
 
+const RUN_NAMES_MANY: Record<Run, string> = {
+  numbered: "numbered copies",
+  ap: "artist's proofs",
+  pp: "printer's proofs",
+  hc: "hors commerce",
+  bat: "bon à tirer",
+  exhibition: "exhibition copies",
+};
+
+/** "1 artist's proof", "2 exhibition copies", for the studio's screens. */
+export function countOfRun(run: Run, count: number): string {
+  return `${count} ${count === 1 ? RUN_NAMES[run].toLowerCase() : RUN_NAMES_MANY[run]}`;
+}
+
 /** Exhibition copies are not for sale, and "hors commerce" says the same of itself. The rest may be sold. */
 export function isForSale(run: Run): boolean {
   return run !== "exhibition" && run !== "hc";

@@ -34,7 +34,11 @@ export async function placeCopy(
   place: PlaceCopy,
 ): Promise<CommandOutcome> {
   if (!can(actor.roles, "copies.place")) throw new AppError("not_allowed", "copies.place");
-  const refuse = (sentence: string): CommandOutcome => ({ kind: "refused", sentence });
+  const refuse = (sentence: string, field?: string): CommandOutcome => ({
+    kind: "refused",
+    sentence,
+    ...(field === undefined ? {} : { field }),
+  });
   try {
     return await inTransaction(async (tx): Promise<CommandOutcome> => {
       const edition = await lockEdition(tx, editionId);
@@ -46,6 +50,7 @@ export async function placeCopy(
       if ((place.act === "retired" || place.act === "set_aside") && place.reason === "") {
         return refuse(
           place.act === "retired" ? "Say why the copy is retired." : "Say what the copy is set aside for.",
+          "reason",
         );
       }
       const secret = place.reason === "" ? {} : { reason: place.reason };
@@ -59,9 +64,9 @@ export async function placeCopy(
         });
         return { kind: "done" };
       }
-      if (place.to.name === "") return refuse("Say who was given the copy.");
+      if (place.to.name === "") return refuse("Say who was given the copy.", "toName");
       const formatId = copy.formatId ?? (await formatTaken(tx, editionId, place.formatId));
-      if (formatId === null) return refuse("Say in which format the copy is given.");
+      if (formatId === null) return refuse("Say in which format the copy is given.", "formatId");
       const partyId = await partyGiven(tx, place.to);
       await moveCopy(tx, edition, actor, {
         kind: "given",
