@@ -12,7 +12,7 @@ import {
 import { and, asc, eq, inArray } from "drizzle-orm";
 import { isoDayInZone, type PartialDate } from "~/domain/dates";
 import { markOf } from "~/domain/editions/ledger.server";
-import { readBody } from "~/domain/editions/ledger-words";
+import { readBody } from "~/domain/editions/ledger-body";
 import { theStudio } from "~/domain/studio/studio.server";
 import { publicUrl } from "~/platform/storage.server";
 import { normaliseCheckCode } from "./check-code.server";
